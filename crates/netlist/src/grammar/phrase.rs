@@ -1,0 +1,70 @@
+//! Phrases whose first or second word is misspelt.
+//!
+//! A word of a phrase is a name unless the phrase's next word follows it, so `energy int r1` is
+//! the name `energy` with something left over, and `enrgy into r1` the name `enrgy`. When a
+//! statement is left over like that, the phrase that was probably meant is looked for here.
+
+use pulsewright_circuit::Span;
+use pulsewright_circuit::near::nearest;
+
+use super::Parser;
+use super::reading::BEGINNINGS;
+use crate::slip::{Slip, What};
+
+/// First and second words of the phrases that are no readings.
+const OTHERS: &[(&str, &[&str])] = &[
+    ("voltage", &["across", "at", "from"]),
+    ("current", &["through"]),
+    ("power", &["into"]),
+    ("charge", &["held"]),
+    ("flux", &["held"]),
+    ("energy", &["held"]),
+    ("closing", &["of"]),
+    ("opening", &["of"]),
+    ("moving", &["of"]),
+    ("conducting", &["of"]),
+    ("blocking", &["of"]),
+    ("open", &["circuit"]),
+    ("short", &["circuit"]),
+];
+
+impl Parser<'_> {
+    /// The mistake of the word here, or of the one before it, that is near a phrase's word.
+    pub(super) fn misspelt_phrase(&self) -> Option<Box<Slip>> {
+        let before = self.at.checked_sub(1).and_then(|i| self.tokens.get(i))?;
+        let (first, second) = (before.text(self.text), self.word(0)?);
+        let all = || BEGINNINGS.iter().chain(OTHERS);
+        let seconds = all()
+            .filter(|(f, _)| *f == first)
+            .flat_map(|(_, s)| s.iter().copied());
+        if let Some(meant) = nearest(second, seconds) {
+            let expected = format!("`{meant}` after `{first}`");
+            return Some(self.misspelt(self.place(), expected, second, meant));
+        }
+        let firsts = all().filter(|(_, s)| s.contains(&second)).map(|(f, _)| *f);
+        let alone = all()
+            .filter(|(_, s)| s.is_empty() && self.begins_signal())
+            .map(|(f, _)| *f);
+        let meant = nearest(first, firsts.chain(alone))?;
+        Some(self.misspelt(before.span(), format!("`{meant}`"), first, meant))
+    }
+
+    fn misspelt(&self, place: Span, expected: String, found: &str, meant: &str) -> Box<Slip> {
+        let (within, found, near) = (self.subject(), format!("`{found}`"), Some(meant.to_owned()));
+        Box::new(Slip::new(
+            place,
+            What::Expected {
+                within,
+                expected,
+                found,
+                near,
+            },
+        ))
+    }
+
+    fn begins_signal(&self) -> bool {
+        let second = |words: &[&str]| self.word(1).is_some_and(|w| words.contains(&w));
+        self.word(0)
+            .is_some_and(|w| OTHERS.iter().any(|(f, s)| *f == w && second(s)))
+    }
+}
