@@ -400,10 +400,8 @@ impl Run<'_> {
     /// Largest difference of two points' states, over the largest value of each state so far.
     fn distance(&self, a: &Point, b: &Point) -> f64 {
         let n = self.net.capacitances.len();
-        let (volts, amperes) = (
-            1e-3 * top(self.largest.get(..n)),
-            1e-3 * top(self.largest.get(n..)),
-        );
+        // Neither a state that has not moved yet nor a wave's far forerunner asks for steps.
+        let (volts, amperes) = (1e-3 * self.volts, 1e-3 * self.amperes);
         let one = |x: f64, y: f64, k: usize, floor: f64| {
             let scale = self.largest[k].max(x.abs()).max(floor);
             if scale > 0.0 {
@@ -425,13 +423,6 @@ impl Run<'_> {
         v.chain(i)
             .fold(0.0, |m, d| if d > m || d.is_nan() { d } else { m })
     }
-}
-
-fn top(values: Option<&[f64]>) -> f64 {
-    values
-        .into_iter()
-        .flatten()
-        .fold(0.0, |a, b| a.max(b.abs()))
 }
 
 fn step_share(power: u32) -> f64 {
