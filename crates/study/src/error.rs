@@ -1,0 +1,71 @@
+//! Why a circuit could not be fired or judged.
+
+use pulsewright_circuit::Fault;
+use pulsewright_engine::Failure;
+
+/// Why a circuit could not be fired or judged.
+#[derive(Clone, Debug, PartialEq, thiserror::Error)]
+#[non_exhaustive]
+pub enum StudyError {
+    /// The engine found no answer, met a limit, or broke.
+    #[error("{0}")]
+    Engine(Failure),
+    /// Values that are out of range in this case, or let-values that do not exist.
+    #[error("{}", first(.0))]
+    Faults(Vec<Fault>),
+    /// A claim on a reading that depends on the potential at which an island was held.
+    #[error("claim `{claim}` cannot be judged: {why}")]
+    Floating {
+        /// The claim.
+        claim: String,
+        /// Why, with what to write.
+        why: String,
+    },
+    /// The joules of a shot do not add up within their bounds: a defect of the run.
+    #[error(
+        "the energy balance does not close: {residual} J are missing, with a bound of {bound} J"
+    )]
+    Balance {
+        /// What does not add up, J.
+        residual: f64,
+        /// The bound on it, J.
+        bound: f64,
+    },
+    /// A case that does not exist.
+    #[error("there is no case {case}: the cases are numbered 1 to {of}")]
+    NoCase {
+        /// The number asked for.
+        case: usize,
+        /// How many there are.
+        of: usize,
+    },
+    /// The caller's hook asked to stop.
+    #[error("stopped at {time} s")]
+    Cancelled {
+        /// How far the shot had come, s.
+        time: f64,
+    },
+}
+
+fn first(faults: &[Fault]) -> String {
+    match faults {
+        [] => "the circuit has a mistake".to_owned(),
+        [one] => one.to_string(),
+        [one, rest @ ..] => format!("{one} (and {} more)", rest.len()),
+    }
+}
+
+impl From<Failure> for StudyError {
+    fn from(failure: Failure) -> Self {
+        match failure {
+            Failure::Cancelled { time } => StudyError::Cancelled { time },
+            other => StudyError::Engine(other),
+        }
+    }
+}
+
+impl From<Vec<Fault>> for StudyError {
+    fn from(faults: Vec<Fault>) -> Self {
+        StudyError::Faults(faults)
+    }
+}

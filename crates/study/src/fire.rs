@@ -1,0 +1,278 @@
+//! Fires a circuit: one case, read on a ladder of meshes, judged.
+//!
+//! ```text
+//! let-values -> setup -> plan -> ladder of shots -> readings with bounds -> claims -> Fired
+//! ```
+
+use pulsewright_circuit::draft::Claim;
+use pulsewright_circuit::setup::Element;
+use pulsewright_circuit::{Circuit, Dimension, Expr, LetValue, Setup};
+use pulsewright_engine::Event;
+
+use crate::cases::case_set;
+use crate::channels::channels;
+use crate::claims::{Bounded, Judgement, Limits, judge, limits};
+use crate::error::StudyError;
+use crate::hazards::hazards;
+use crate::ladder::{Ladder, Turn};
+use crate::options::Options;
+use crate::outcome::{Answer, ClaimResult, Fired, Found, ReadingResult, Set, SetValue, Verdict};
+use crate::plan::Plan;
+use crate::readings::{Case, Reader};
+use crate::remarks::remarks;
+use crate::series::{Rules, Series};
+
+/// Fires one shot at the nominal let-values, or at those of `options.case`, and judges it.
+///
+/// # Errors
+///
+/// [`StudyError`] where the circuit has no answer, a let-value does not fit, a claim is on a
+/// floating reading, the joules do not add up, or the hook stops the run.
+pub fn fire(circuit: &Circuit, options: &Options<'_>) -> Result<Fired, StudyError> {
+    let set = match options.case {
+        Some(n) => case_set(circuit, options, n)?,
+        None => options.held.clone(),
+    };
+    run(circuit, &set, options, Turn { case: 1, of: 1 })
+}
+
+/// Fires one case.
+pub(crate) fn run(
+    circuit: &Circuit,
+    set: &[(String, LetValue)],
+    options: &Options<'_>,
+    turn: Turn,
+) -> Result<Fired, StudyError> {
+    let lets = circuit.lets(set)?;
+    let setup = circuit.setup(&lets)?;
+    let case = Case {
+        circuit,
+        setup: &setup,
+        lets: &lets,
+    };
+    let plan = Plan::new(case, options);
+    let judge = Judge {
+        plan: &plan,
+        applies: applying(&plan)?,
+    };
+    let ladder = Ladder::climb(&plan, options, turn, &|series, rules| {
+        judge.is_decided(series, rules)
+    })?;
+    let claims = judge.claims(&ladder.readings, ladder.rules)?;
+    let balance = ladder.ledger.result(&setup, ladder.rules)?;
+    let reader = Reader::new(case, &ladder.shot);
+    Ok(Fired {
+        set: settings(set),
+        readings: named(&plan, &ladder),
+        claims,
+        events: ladder
+            .log
+            .result(&ladder.shot.events, setup.span, ladder.rules),
+        balance,
+        stress: if plan.stress {
+            ladder.loads.result(&setup, ladder.rules)
+        } else {
+            Vec::new()
+        },
+        hazards: hazards(&plan, reader.record()),
+        remarks: remarks(circuit, &setup, &ladder.shot),
+        defaults: circuit.defaults(),
+        method: setup.method.words().to_owned(),
+        span: setup.span,
+        channels: channels(&plan, &reader),
+        parts: setup.parts.iter().map(|p| p.name.clone()).collect(),
+        changes: ladder
+            .shot
+            .events
+            .iter()
+            .map(|e| change(&setup, e))
+            .collect(),
+        shot: ladder.shot,
+    })
+}
+
+/// Which claims apply in a case.
+fn applying(plan: &Plan<'_>) -> Result<Vec<bool>, StudyError> {
+    let Case { circuit, lets, .. } = plan.case;
+    let mut all = Vec::new();
+    for claim in plan.claims() {
+        let mut applies = true;
+        for condition in &claim.when {
+            applies &= circuit.applies(lets, condition)?;
+        }
+        all.push(applies);
+    }
+    Ok(all)
+}
+
+struct Judge<'p, 'a> {
+    plan: &'p Plan<'a>,
+    applies: Vec<bool>,
+}
+
+impl Judge<'_, '_> {
+    /// Whether every claim that applies is decided, or no further mesh would decide it.
+    fn is_decided(&self, series: &[Series], rules: Rules) -> bool {
+        let mut claims = self
+            .plan
+            .claims()
+            .iter()
+            .zip(&self.applies)
+            .filter(|(_, applies)| **applies);
+        claims.all(|(claim, _)| {
+            self.judgement(claim, series, rules).1.verdict != Verdict::Undecided
+                || self
+                    .read(&claim.reading, series)
+                    .is_none_or(|s| s.is_final(rules))
+        })
+    }
+
+    fn read<'s>(&self, expr: &Expr, series: &'s [Series]) -> Option<&'s Series> {
+        series.get(self.plan.place(expr)?)
+    }
+
+    fn found(&self, expr: &Expr, series: &[Series], rules: Rules) -> Found {
+        match self.read(expr, series) {
+            Some(series) => series.found(rules),
+            None => Found::Absent(format!("{expr} was not measured")),
+        }
+    }
+
+    /// A limit's expression: a number as written, or a reading with its bound.
+    fn limit(&self, expr: &Expr, series: &[Series], rules: Rules) -> Result<Bounded, String> {
+        let case = self.plan.case;
+        if let Ok(value) = case.circuit.value(case.lets, expr) {
+            return Ok(Bounded { value, bound: 0.0 });
+        }
+        match self.found(expr, series, rules) {
+            Found::Value { value, bound } => Ok(Bounded { value, bound }),
+            Found::Absent(why) | Found::Unbounded(why) | Found::Floating(why) => {
+                Err(format!("its limit has no number: {why}"))
+            }
+        }
+    }
+
+    fn judgement(&self, claim: &Claim, series: &[Series], rules: Rules) -> (Limits, Judgement) {
+        let number = |e: &Expr| self.limit(e, series, rules);
+        let found = self.found(&claim.reading, series, rules);
+        let dimension = self.plan.case.circuit.dimension(&claim.reading);
+        match limits(&claim.relation, claim.allowing.as_ref(), &number) {
+            Ok(limits) => (limits, judge(&found, &limits, dimension)),
+            Err(why) => {
+                let failed = Judgement {
+                    margin: None,
+                    verdict: Verdict::Fails,
+                    reason: Some(why),
+                };
+                (Limits::default(), failed)
+            }
+        }
+    }
+
+    fn claims(&self, series: &[Series], rules: Rules) -> Result<Vec<ClaimResult>, StudyError> {
+        let claims = self.plan.claims().iter().zip(&self.applies);
+        claims
+            .map(|(claim, applies)| self.claim(claim, *applies, series, rules))
+            .collect()
+    }
+
+    fn claim(
+        &self,
+        claim: &Claim,
+        applies: bool,
+        series: &[Series],
+        rules: Rules,
+    ) -> Result<ClaimResult, StudyError> {
+        let found = self.found(&claim.reading, series, rules);
+        if let (Found::Floating(why), true) = (&found, applies) {
+            return Err(StudyError::Floating {
+                claim: claim.name.text.clone(),
+                why: why.clone(),
+            });
+        }
+        let (limits, judged) = self.judgement(claim, series, rules);
+        let (verdict, reason) = if applies {
+            (judged.verdict, judged.reason)
+        } else {
+            (
+                Verdict::DoesNotApply,
+                Some(format!("it applies only when {}", conditions(claim))),
+            )
+        };
+        Ok(ClaimResult {
+            name: claim.name.text.clone(),
+            text: claim.reading.to_string(),
+            answer: answer(found, self.plan.case.circuit.dimension(&claim.reading)),
+            relation: claim.relation.to_string(),
+            least: limits.least.map(|l| l.value),
+            most: limits.most.map(|l| l.value),
+            margin: judged.margin,
+            verdict,
+            reason,
+            answers: claim.answers.clone(),
+        })
+    }
+}
+
+fn conditions(claim: &Claim) -> String {
+    claim
+        .when
+        .iter()
+        .map(ToString::to_string)
+        .collect::<Vec<_>>()
+        .join(" and ")
+}
+
+fn answer(found: Found, dimension: Dimension) -> Answer {
+    Answer {
+        found,
+        dimension,
+        unit: dimension.unit(),
+    }
+}
+
+fn named(plan: &Plan<'_>, ladder: &Ladder) -> Vec<ReadingResult> {
+    let circuit = plan.case.circuit;
+    let result = |named: &pulsewright_circuit::draft::Named| {
+        let series = ladder.readings.get(plan.place(&named.value)?)?;
+        Some(ReadingResult {
+            name: named.name.text.clone(),
+            text: named.value.to_string(),
+            answer: answer(series.found(ladder.rules), circuit.dimension(&named.value)),
+        })
+    };
+    circuit.draft().readings.iter().filter_map(result).collect()
+}
+
+fn settings(set: &[(String, LetValue)]) -> Set {
+    let value = |v: &LetValue| match v {
+        LetValue::Number { value, dimension } => SetValue::Number {
+            value: *value,
+            unit: dimension.unit(),
+        },
+        LetValue::Open => SetValue::Circuit("open circuit".to_owned()),
+        LetValue::Short => SetValue::Circuit("short circuit".to_owned()),
+    };
+    set.iter()
+        .map(|(name, v)| (name.clone(), value(v)))
+        .collect()
+}
+
+/// What an event changed, in words.
+fn change(setup: &Setup, event: &Event) -> String {
+    match setup.parts.get(event.part).map(|p| &p.element) {
+        Some(Element::Changeover { contacts, .. }) => {
+            let node = contacts
+                .get(usize::from(event.state))
+                .and_then(|n| setup.nodes.get(*n));
+            format!("moves to {}", node.map_or("?", String::as_str))
+        }
+        Some(Element::Diode { .. }) => if event.state == 1 {
+            "conducts"
+        } else {
+            "blocks"
+        }
+        .to_owned(),
+        _ => if event.state == 1 { "closes" } else { "opens" }.to_owned(),
+    }
+}

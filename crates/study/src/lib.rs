@@ -1,0 +1,36 @@
+//! Readings out of shots with their bounds, claims to verdicts, cases.
+//!
+//! ```text
+//! Circuit -> plan -> ladder of meshes -> readings -> bounds -> claims -> Fired, Judged
+//! ```
+//!
+//! [`fire`] fires one case and reads it; [`judge`] does so for every case. Both return values
+//! that hold all a report shows. This crate knows no text format and no equations: it reads
+//! waveforms ([`waveform`]), measures ([`readings`]), compares meshes ([`bounds`]) and judges
+//! ([`claims`]).
+
+pub mod balance;
+pub mod bounds;
+mod cases;
+mod channels;
+pub mod claims;
+mod error;
+mod events;
+mod fire;
+mod hazards;
+mod ladder;
+mod options;
+pub mod outcome;
+mod plan;
+pub mod readings;
+mod remarks;
+pub mod series;
+mod stress;
+pub mod waveform;
+
+pub use cases::judge;
+pub use error::StudyError;
+pub use fire::fire;
+pub use options::{Hook, Options, Progress};
+pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict};
+pub use remarks::CODES;

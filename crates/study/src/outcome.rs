@@ -1,0 +1,273 @@
+//! What a fired or judged circuit answers: the values that reports are made of.
+//!
+//! All numbers are in coherent SI units, every bound is absolute and in the same unit.
+
+use pulsewright_circuit::dimension::Dimension;
+use pulsewright_engine::{Event, Shot};
+
+/// One reading's answer.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Answer {
+    /// The value with its bound, or why there is none.
+    pub found: Found,
+    /// Its dimension.
+    #[cfg_attr(feature = "serde", serde(skip))]
+    pub dimension: Dimension,
+    /// Its unit in coherent SI, empty for a plain number.
+    pub unit: String,
+}
+
+/// A value with its bound, or why there is none.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub enum Found {
+    /// A value whose error is at most `bound`.
+    Value {
+        /// The value.
+        value: f64,
+        /// The bound on its numerical error, 0 or more.
+        bound: f64,
+    },
+    /// It does not exist in this shot; why, in words.
+    Absent(String),
+    /// It is without bound; why, in words, with the instant.
+    Unbounded(String),
+    /// It depends on the potential at which an island was held; what to name instead.
+    Floating(String),
+}
+
+/// A named reading.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct ReadingResult {
+    /// Its name.
+    pub name: String,
+    /// The reading as the language writes it.
+    pub text: String,
+    /// Its answer.
+    pub answer: Answer,
+}
+
+/// The verdicts.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub enum Verdict {
+    /// The whole interval meets the claim.
+    Holds,
+    /// None of it does.
+    Fails,
+    /// Refinement ended before it was decided.
+    Undecided,
+    /// The claim does not apply in this case.
+    DoesNotApply,
+}
+
+impl Verdict {
+    /// The verdict in words: `holds`, `fails`, `undecided`, `does not apply`.
+    #[must_use]
+    pub const fn words(self) -> &'static str {
+        match self {
+            Verdict::Holds => "holds",
+            Verdict::Fails => "fails",
+            Verdict::Undecided => "undecided",
+            Verdict::DoesNotApply => "does not apply",
+        }
+    }
+}
+
+/// A claim in one case.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct ClaimResult {
+    /// Its name.
+    pub name: String,
+    /// The reading as the language writes it.
+    pub text: String,
+    /// The reading's answer; in a case where the claim does not apply too.
+    pub answer: Answer,
+    /// The relation as the language writes it (`is at most 90 A`).
+    pub relation: String,
+    /// The lower limit, `allowing` included.
+    pub least: Option<f64>,
+    /// The upper limit, `allowing` included.
+    pub most: Option<f64>,
+    /// How far the value is inside the limits (negative: outside).
+    pub margin: Option<f64>,
+    /// The verdict.
+    pub verdict: Verdict,
+    /// Why, where a number does not say it (absent, undecided with what to do).
+    pub reason: Option<String>,
+    /// The requirements it answers.
+    pub answers: Vec<String>,
+}
+
+/// A let-value as set in a case.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub enum SetValue {
+    /// A number with its unit.
+    Number {
+        /// The value in coherent SI units.
+        value: f64,
+        /// Its unit.
+        unit: String,
+    },
+    /// `open circuit` or `short circuit`.
+    Circuit(String),
+}
+
+/// Let-values held or varied, in the order of the file.
+pub type Set = Vec<(String, SetValue)>;
+
+/// A value, its bound and when it was.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Extreme {
+    /// The value.
+    pub value: f64,
+    /// Its bound; infinite where it is unbounded.
+    pub bound: f64,
+    /// The instant, s.
+    pub time: f64,
+}
+
+/// What a part had to stand.
+#[derive(Clone, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Stress {
+    /// The part's name.
+    pub part: String,
+    /// Largest voltage across it, V (none for a changeover).
+    pub voltage: Option<Extreme>,
+    /// Largest current through it, A.
+    pub current: Option<Extreme>,
+    /// Largest power into it, W.
+    pub power: Option<Extreme>,
+    /// Energy into it, J, with its bound.
+    pub energy: Option<(f64, f64)>,
+    /// Action, A²·s, with its bound.
+    pub action: Option<(f64, f64)>,
+}
+
+/// A stored-energy hazard.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Hazard {
+    /// The part, or `the circuit` for the energy of all.
+    pub part: String,
+    /// Its highest voltage, V.
+    pub voltage: f64,
+    /// The most energy it held, J.
+    pub energy: f64,
+    /// From when on its voltage stays at or below 60 V, s; `None`: never in sight.
+    pub at_most_60_v_from: Option<f64>,
+    /// Whether that instant was estimated beyond the span.
+    pub estimated: bool,
+}
+
+/// The energy balance, with its bound.
+#[derive(Clone, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct BalanceResult {
+    /// Stored at the start, J.
+    pub stored_start: f64,
+    /// Stored at the end, J.
+    pub stored_end: f64,
+    /// Out of each source, by name, J.
+    pub supplied: Vec<(String, f64)>,
+    /// Heat in each part with resistance, by name, J.
+    pub dissipated: Vec<(String, f64)>,
+    /// Lost at jumps, J.
+    pub lost_at_events: f64,
+    /// What does not add up, J.
+    pub residual: f64,
+    /// The bound on it, J.
+    pub bound: f64,
+}
+
+/// A remark: what was seen, what it may mean, what to try.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Remark {
+    /// Its code (`R0203`).
+    pub code: String,
+    /// Its text.
+    pub text: String,
+    /// Bytes of the source text that it is about.
+    #[cfg_attr(feature = "serde", serde(skip))]
+    pub span: pulsewright_circuit::Span,
+}
+
+/// One shot, read and judged.
+#[derive(Clone, Debug)]
+pub struct Fired {
+    /// The let-values that were set or varied.
+    pub set: Set,
+    /// The named readings, in the file's order.
+    pub readings: Vec<ReadingResult>,
+    /// The claims, in the file's order.
+    pub claims: Vec<ClaimResult>,
+    /// The event log of the finest shot, with a bound on each instant, s.
+    pub events: Vec<(Event, f64)>,
+    /// The balance.
+    pub balance: BalanceResult,
+    /// What each part had to stand; empty where not asked for.
+    pub stress: Vec<Stress>,
+    /// Hazards.
+    pub hazards: Vec<Hazard>,
+    /// Remarks on the model and the run.
+    pub remarks: Vec<Remark>,
+    /// Defaults that were taken, in words.
+    pub defaults: Vec<String>,
+    /// The integrator in words.
+    pub method: String,
+    /// How long the shot was followed, s.
+    pub span: f64,
+    /// The finest shot; its first probes are the channels where channels were asked for.
+    pub shot: Shot,
+    /// The channels read off the finest shot.
+    pub channels: Vec<Channel>,
+    /// The names of the parts, for [`Event::part`].
+    pub parts: Vec<String>,
+    /// For each event, what happened in words (`closes`, `moves to pad`, `conducts`).
+    pub changes: Vec<String>,
+}
+
+/// A channel: a signal along the shot.
+#[derive(Clone, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Channel {
+    /// The signal as the language writes it.
+    pub text: String,
+    /// Its unit.
+    pub unit: String,
+    /// Instants, s; an event stands twice.
+    pub times: Vec<f64>,
+    /// Values.
+    pub values: Vec<f64>,
+    /// Slopes, for reading between the instants.
+    pub slopes: Vec<f64>,
+}
+
+/// Every case, judged.
+#[derive(Clone, Debug)]
+pub struct Judged {
+    /// The cases in order, the last stated let-value running fastest; one where there are none.
+    pub cases: Vec<Fired>,
+    /// Each claim over all cases.
+    pub claims: Vec<ClaimSummary>,
+}
+
+/// A claim over all cases.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct ClaimSummary {
+    /// Its name.
+    pub name: String,
+    /// Its verdict: `fails` where any case fails, else `undecided` where any is, else `holds`;
+    /// `undecided` where it applies in no case.
+    pub verdict: Verdict,
+    /// Index of the case with the least margin among those with the verdict.
+    pub worst: Option<usize>,
+}

@@ -1,0 +1,142 @@
+//! What a case is fired for: the readings to take, what to record, where to land.
+//!
+//! Every expression that has to be read is listed once: named readings, what claims judge, and
+//! those limits of claims that are not numbers. What is recorded starts with the channels.
+
+use std::collections::HashSet;
+
+use pulsewright_circuit::draft::Claim;
+use pulsewright_circuit::setup::Element;
+use pulsewright_circuit::{Expr, Probe};
+use pulsewright_engine::ports;
+
+use crate::claims::expressions;
+use crate::options::Options;
+use crate::readings::{Case, needs};
+
+/// How many channels are taken where none is stated.
+const CHANNELS: usize = 8;
+/// Up to how many parts stress and hazards are read.
+pub const STRESS_PARTS: usize = 200;
+
+/// What a case is fired for.
+pub struct Plan<'a> {
+    /// The circuit with its numbers.
+    pub case: Case<'a>,
+    /// The expressions to read, each once.
+    pub readings: Vec<Expr>,
+    /// The channels.
+    pub channels: Vec<Expr>,
+    /// What to record.
+    pub probes: Vec<Probe>,
+    /// Where to land, s.
+    pub landings: Vec<f64>,
+    /// Whether stress is read.
+    pub stress: bool,
+    /// Capacitors whose stored energy is watched, by index, with their capacitance, F.
+    pub stores: Vec<(usize, f64)>,
+}
+
+impl<'a> Plan<'a> {
+    /// What `case` is fired for.
+    #[must_use]
+    pub fn new(case: Case<'a>, options: &Options<'_>) -> Self {
+        let readings = readings(case);
+        let stated = case.circuit.draft().run.channels.is_some() || options.channels.is_some();
+        let mut channels = options
+            .channels
+            .clone()
+            .unwrap_or_else(|| case.circuit.channels());
+        channels.dedup();
+        if !stated {
+            channels.truncate(CHANNELS);
+        }
+        let few = case.setup.parts.len() <= STRESS_PARTS;
+        let mut plan = Plan {
+            case,
+            readings,
+            channels,
+            probes: Vec::new(),
+            landings: Vec::new(),
+            stress: options.stress && few,
+            stores: if few { stores(case) } else { Vec::new() },
+        };
+        plan.record();
+        plan
+    }
+
+    fn record(&mut self) {
+        let case = self.case;
+        let formulas = self
+            .channels
+            .iter()
+            .filter_map(|c| case.circuit.formula(case.setup, case.lets, c).ok());
+        let mut all: Vec<Probe> = formulas.flat_map(|f| f.probes()).collect();
+        let needed = needs(case, &self.readings);
+        all.extend(needed.probes);
+        all.push(Probe::EnergyStored);
+        all.extend(self.stores.iter().map(|(part, _)| Probe::ChargeHeld(*part)));
+        if self.stress {
+            for part in 0..case.setup.parts.len() {
+                all.extend(
+                    ports(case.setup, part)
+                        .into_iter()
+                        .flat_map(|(v, i)| [v, i]),
+                );
+                if matches!(
+                    case.setup.parts.get(part).map(|p| &p.element),
+                    Some(Element::Changeover { .. })
+                ) {
+                    all.push(Probe::CurrentThrough(part));
+                }
+            }
+        }
+        let mut known = HashSet::new();
+        all.retain(|p| known.insert(*p));
+        self.probes = all;
+        self.landings = needed.landings;
+    }
+
+    /// Where an expression stands among those read.
+    #[must_use]
+    pub fn place(&self, expr: &Expr) -> Option<usize> {
+        self.readings.iter().position(|e| e == expr)
+    }
+
+    /// The claims of the netlist.
+    #[must_use]
+    pub fn claims(&self) -> &'a [Claim] {
+        &self.case.circuit.draft().claims
+    }
+}
+
+fn readings(case: Case<'_>) -> Vec<Expr> {
+    let draft = case.circuit.draft();
+    let mut all: Vec<Expr> = Vec::new();
+    let mut take = |e: &Expr| {
+        if !all.contains(e) {
+            all.push(e.clone());
+        }
+    };
+    draft.readings.iter().for_each(|r| take(&r.value));
+    for claim in &draft.claims {
+        take(&claim.reading);
+        let limits = expressions(&claim.relation, claim.allowing.as_ref());
+        limits
+            .into_iter()
+            .filter(|e| case.circuit.value(case.lets, e).is_err())
+            .for_each(&mut take);
+    }
+    all
+}
+
+fn stores(case: Case<'_>) -> Vec<(usize, f64)> {
+    let farads = |e: &Element| match e {
+        Element::Capacitor { farads, .. } => Some(*farads),
+        _ => None,
+    };
+    let parts = case.setup.parts.iter().enumerate();
+    parts
+        .filter_map(|(i, p)| Some((i, farads(&p.element)?)))
+        .collect()
+}

@@ -1,0 +1,487 @@
+//! From a netlist to verdicts, against closed forms: every true value must lie inside its bound.
+
+use pulsewright_circuit::{Circuit, Dimension, LetValue};
+use pulsewright_study::outcome::{ClaimResult, SetValue};
+use pulsewright_study::{Fired, Found, Options, Progress, StudyError, Verdict, fire, judge};
+
+/// A damped-sine stage: 32 uF at 4.8 kV, 25 mH with 10 ohm, into 50 ohm.
+const STAGE: &str = "\
+let load = 50 ohm
+capacitor bank  from top to ground = 32 uF, charged to 4.8 kV
+switch    fire  from top to mid    : open, closes at 1 us
+inductor  choke from mid to pad    = 25 mH, winding 10 ohm
+resistor  chest from pad to ground = load
+span 30 ms
+";
+
+fn circuit(text: &str) -> Circuit {
+    pulsewright_netlist::read(text.as_bytes(), "test")
+        .unwrap_or_else(|m| panic!("{m}"))
+        .circuit
+}
+
+fn fired(text: &str) -> Fired {
+    fire(&circuit(text), &Options::default()).unwrap_or_else(|e| panic!("{e}"))
+}
+
+fn stage(more: &str) -> Fired {
+    fired(&format!("{STAGE}{more}"))
+}
+
+fn value(found: &Found) -> (f64, f64) {
+    match found {
+        Found::Value { value, bound } => (*value, *bound),
+        other => panic!("{other:?}"),
+    }
+}
+
+fn reading(f: &Fired, name: &str) -> (f64, f64) {
+    value(
+        &f.readings
+            .iter()
+            .find(|r| r.name == name)
+            .unwrap()
+            .answer
+            .found,
+    )
+}
+
+/// The true value must lie inside the bound, and the bound within `share` of it.
+fn check(f: &Fired, name: &str, exact: f64, share: f64) {
+    let (got, bound) = reading(f, name);
+    let slack = 1e-13 * exact.abs();
+    assert!(
+        (got - exact).abs() <= bound + slack,
+        "{name}: {got} ± {bound:e}, should be {exact}"
+    );
+    assert!(
+        bound <= share * exact.abs(),
+        "{name}: the bound {bound:e} is too wide for {exact}"
+    );
+}
+
+fn claim<'f>(f: &'f Fired, name: &str) -> &'f ClaimResult {
+    f.claims.iter().find(|c| c.name == name).unwrap()
+}
+
+/// Current of the stage a time `t` after the switch closes, A, and its damping and frequency.
+fn current(t: f64) -> (f64, f64, f64) {
+    let (c, l, r, v) = (32e-6_f64, 25e-3_f64, 60.0_f64, 4800.0_f64);
+    let damping = r / (2.0 * l);
+    let w = (1.0 / (l * c) - damping * damping).abs().sqrt();
+    let i = if 1.0 / (l * c) > damping * damping {
+        v / (w * l) * (-damping * t).exp() * (w * t).sin()
+    } else {
+        v / (w * l) * (-damping * t).exp() * (w * t).sinh()
+    };
+    (i, damping, w)
+}
+
+fn crest() -> (f64, f64) {
+    let (_, damping, w) = current(0.0);
+    let underdamped = 1.0 / (25e-3 * 32e-6) > damping * damping;
+    let t = if underdamped {
+        (w / damping).atan() / w
+    } else {
+        (w / damping).atanh() / w
+    };
+    (current(t).0, t)
+}
+
+#[test]
+fn the_stage_agrees_with_its_closed_form() {
+    let f = stage(
+        "reading crest = largest current through chest\n\
+         reading instant = time of largest current through chest\n\
+         reading yield = energy into chest / energy held by bank just before 0 s\n\
+         reading held  = energy held by bank just before 0 s\n",
+    );
+    let (i, t) = crest();
+    check(&f, "crest", i, 1e-6);
+    check(&f, "instant", t + 1e-6, 1e-6);
+    check(&f, "held", 0.5 * 32e-6 * 4800.0 * 4800.0, 1e-9);
+    check(&f, "yield", 50.0 / 60.0, 1e-6);
+}
+
+#[test]
+fn backward_euler_is_bounded_honestly_too() {
+    let f = stage(
+        "integrate by backward Euler\nerror at most 0.1 %\nreading crest = largest current through chest\n",
+    );
+    check(&f, "crest", crest().0, 1e-3);
+    assert_eq!(f.method, "backward Euler");
+}
+
+#[test]
+fn a_fixed_step_reports_its_own_value_with_a_bound_that_covers_it() {
+    let f = stage("time step 50 us\nreading crest = largest current through chest\n");
+    let (got, bound) = reading(&f, "crest");
+    let error = (got - crest().0).abs();
+    assert!(error > 1e-5 * got, "{got}");
+    assert!(error <= bound && bound < 1.5 * error, "{error:e} {bound:e}");
+}
+
+#[test]
+fn the_joules_add_up() {
+    let f = stage("");
+    let b = &f.balance;
+    assert!((b.stored_start - 368.64).abs() < 1e-9);
+    let heat: f64 = b.dissipated.iter().map(|d| d.1).sum();
+    assert!((b.stored_start - heat - b.stored_end - b.lost_at_events - b.residual).abs() < 1e-9);
+    assert!(b.residual.abs() <= b.bound && b.bound < 1e-4);
+    assert!(
+        b.dissipated
+            .iter()
+            .map(|d| d.0.as_str())
+            .eq(["choke", "chest"])
+    );
+}
+
+#[test]
+fn verdicts_with_margins() {
+    let f = stage(
+        "claim dose: energy into chest is within 15 % or 3 J of 300 J, answers \"REQ-12\"\n\
+         claim low: largest current through chest is at most 50 A\n",
+    );
+    let dose = claim(&f, "dose");
+    assert_eq!(
+        (dose.verdict, dose.least, dose.most),
+        (Verdict::Holds, Some(255.0), Some(345.0))
+    );
+    assert!((dose.margin.unwrap() - 37.8).abs() < 1e-3);
+    assert_eq!(dose.answers, ["REQ-12"]);
+    assert_eq!(
+        (dose.relation.as_str(), dose.text.as_str()),
+        ("is within 15 % or 3 J of 300 J", "energy into chest")
+    );
+    let low = claim(&f, "low");
+    assert_eq!(low.verdict, Verdict::Fails);
+    assert!(low.margin.unwrap() < -10.0);
+}
+
+#[test]
+fn a_value_on_its_limit_is_undecided_until_it_is_allowed() {
+    let claim_of = |more: &str| {
+        stage(&format!(
+            "claim top: largest voltage across bank is at most 4.8 kV{more}\n"
+        ))
+    };
+    let open = claim_of("");
+    let top = claim(&open, "top");
+    assert_eq!(top.verdict, Verdict::Undecided);
+    assert!(
+        top.reason.as_ref().unwrap().contains("write `allowing "),
+        "{:?}",
+        top.reason
+    );
+    assert_eq!(
+        claim(&claim_of(", allowing 1 mV"), "top").verdict,
+        Verdict::Holds
+    );
+}
+
+#[test]
+fn a_claim_near_its_limit_is_decided_by_refinement() {
+    let exact = crest().0;
+    let near = |x: f64| {
+        let f = stage(&format!(
+            "error at most 1 %\nclaim top: largest current through chest is at most {x:.12} A\n"
+        ));
+        claim(&f, "top").verdict
+    };
+    assert_eq!(near(exact * (1.0 + 1e-8)), Verdict::Holds);
+    assert_eq!(near(exact * (1.0 - 1e-8)), Verdict::Fails);
+}
+
+#[test]
+fn a_limit_may_be_a_reading() {
+    let f = stage("claim most: energy into chest is at most energy held by bank just before 0 s\n");
+    let most = claim(&f, "most");
+    assert_eq!(most.verdict, Verdict::Holds);
+    assert!((most.most.unwrap() - 368.64).abs() < 1e-6);
+}
+
+#[test]
+fn a_claim_on_what_is_absent_fails_and_says_why() {
+    let f = fired(
+        "capacitor bank from a to ground = 1 mF, charged to 100 V\n\
+         resistor chest from a to ground = 1 kohm\n\
+         span 1 ms\n\
+         claim brief: width of voltage across chest at 10 % is at most 15 ms\n",
+    );
+    let brief = claim(&f, "brief");
+    assert_eq!(brief.verdict, Verdict::Fails);
+    assert_eq!(
+        brief.reason.as_deref(),
+        Some("voltage across chest is still above 10 V at the end of the span")
+    );
+}
+
+const FLOATS: &str = "\
+capacitor bank from p to n = 40 uF, charged to 1200 V
+switch hot  from p to pad    : open, closes at 1 ms
+switch cold from n to ground : open, closes at 1 ms
+resistor chest from pad to ground = 60 ohm
+span 5 ms
+";
+
+#[test]
+fn a_claim_on_a_floating_reading_is_an_error_that_says_what_to_write() {
+    let text = format!("{FLOATS}claim top: highest voltage at p is at most 2 kV\n");
+    let error = fire(&circuit(&text), &Options::default()).unwrap_err();
+    assert!(
+        matches!(&error, StudyError::Floating { claim, .. } if claim == "top"),
+        "{error}"
+    );
+    assert!(
+        error.to_string().contains("write `voltage from A to B`"),
+        "{error}"
+    );
+}
+
+#[test]
+fn a_floating_reading_is_marked_and_stops_nothing() {
+    let f = fired(&format!(
+        "{FLOATS}reading p_top = highest voltage at p\nreading v = highest voltage from p to n\n"
+    ));
+    assert!(matches!(f.readings[0].answer.found, Found::Floating(_)));
+    check(&f, "v", 1200.0, 1e-9);
+}
+
+#[test]
+fn an_impulse_is_unbounded_and_its_loss_is_remarked() {
+    let f = fired(
+        "capacitor left  from a to ground = 10 uF, charged to 100 V\n\
+         capacitor right from b to ground = 22 uF, charged to 0 V\n\
+         switch bridge from a to b : open, closes at 1 ms\n\
+         span 2 ms\n\
+         reading surge = largest current through bridge\n\
+         reading moved = charge through bridge\n\
+         claim calm: largest current through bridge is at most 1 kA\n",
+    );
+    assert!(matches!(f.readings[0].answer.found, Found::Unbounded(_)));
+    check(&f, "moved", 687.5e-6, 1e-9);
+    assert_eq!(claim(&f, "calm").verdict, Verdict::Fails);
+    assert!((f.balance.lost_at_events - 0.034375).abs() < 1e-12);
+    let remark = f.remarks.iter().find(|r| r.code == "R0805").unwrap();
+    assert!(
+        remark.text.starts_with("`bridge` lost 34.375 mJ at 1 ms"),
+        "{}",
+        remark.text
+    );
+}
+
+#[test]
+fn an_instant_that_was_found_has_a_bound_and_a_stated_one_has_none() {
+    let f = fired(
+        "capacitor bank from top to ground = 150 uF, charged to 1800 V\n\
+         switch gate from top to pad : open, closes at 1 ms, opens when voltage across bank falls below 630 V\n\
+         resistor chest from pad to ground = 75 ohm\n\
+         span 30 ms\n\
+         reading lasted = opening of gate - closing of gate\n\
+         reading sag = tilt of voltage across chest while gate is closed\n",
+    );
+    let exact = 150e-6 * 75.0 * (1800.0_f64 / 630.0).ln();
+    check(&f, "lasted", exact, 1e-6);
+    check(&f, "sag", 0.65, 1e-6);
+    assert_eq!(f.changes, ["closes", "opens"]);
+    assert_eq!((f.events[0].0.time, f.events[0].1), (1e-3, 0.0));
+    let (opened, bound) = &f.events[1];
+    assert!((opened.time - 1e-3 - exact).abs() <= *bound + 1e-17 && *bound < 1e-8);
+}
+
+#[test]
+fn stress_has_values_bounds_and_instants() {
+    let options = Options {
+        stress: true,
+        ..Options::default()
+    };
+    let f = fire(&circuit(STAGE), &options).unwrap();
+    let chest = f.stress.iter().find(|s| s.part == "chest").unwrap();
+    let (i, t) = crest();
+    let current = chest.current.unwrap();
+    assert!((current.value - i).abs() <= current.bound);
+    assert!((current.time - t - 1e-6).abs() < 1e-7);
+    let power = chest.power.unwrap();
+    assert!((power.value - 50.0 * i * i).abs() <= power.bound + 1e-9);
+    let (energy, bound) = chest.energy.unwrap();
+    let (action, _) = chest.action.unwrap();
+    assert!((energy - 50.0 * action).abs() < 1e-3 && bound < 1e-2);
+}
+
+#[test]
+fn hazards_say_from_when_on_a_part_is_safe() {
+    let decay = |span: &str| {
+        fired(&format!(
+            "capacitor bank from a to ground = 100 uF, charged to 600 V\n\
+             resistor bleed from a to ground = 10 kohm\n\
+             span {span}\n"
+        ))
+    };
+    let exact = 10.0_f64.ln();
+    let seen = decay("5 s");
+    assert_eq!(seen.hazards.len(), 2);
+    let bank = &seen.hazards[0];
+    assert_eq!(
+        (bank.part.as_str(), bank.voltage, bank.estimated),
+        ("bank", 600.0, false)
+    );
+    assert!((bank.energy - 18.0).abs() < 1e-9);
+    assert!((bank.at_most_60_v_from.unwrap() - exact).abs() < 1e-3);
+    assert_eq!(seen.hazards[1].part, "the circuit");
+    let later = &decay("1 s").hazards[0];
+    assert!(later.estimated && (later.at_most_60_v_from.unwrap() - exact).abs() < 1e-3);
+}
+
+#[test]
+fn a_bank_that_never_decays_is_never_safe() {
+    let f = fired(
+        "capacitor bank from a to ground = 100 uF, charged to 600 V\nresistor far from a to ground = open circuit\nspan 1 s\n",
+    );
+    assert_eq!(
+        (f.hazards[0].at_most_60_v_from, f.hazards[0].estimated),
+        (None, false)
+    );
+}
+
+#[test]
+fn channels_are_what_is_stated_else_what_is_read() {
+    let f = stage("reading crest = largest current through chest\n");
+    assert_eq!(f.channels.len(), 1);
+    assert_eq!(
+        (f.channels[0].text.as_str(), f.channels[0].unit.as_str()),
+        ("current through chest", "A")
+    );
+    let channel = &f.channels[0];
+    assert!(
+        channel.times.len() == channel.values.len()
+            && channel.times.windows(2).all(|w| w[0] <= w[1])
+    );
+    let stated = stage("channels voltage across bank, current through choke\n");
+    assert_eq!(stated.channels.len(), 2);
+}
+
+#[test]
+fn every_case_is_judged_and_the_worst_is_named() {
+    let text = format!(
+        "{STAGE}cases load = 25 ohm, 50 ohm, 175 ohm\n\
+         claim dose: energy into chest is within 15 % of 300 J\n\
+         claim low: energy into chest is at most 1 kJ, when load <= 50 ohm\n\
+         claim idle: energy into chest is at most 1 kJ, when load > 1 kohm\n"
+    );
+    let j = judge(&circuit(&text), &Options::default()).unwrap();
+    assert_eq!(j.cases.len(), 3);
+    let loads: Vec<_> = j.cases.iter().map(|c| c.set[0].1.clone()).collect();
+    let ohms = |value| SetValue::Number {
+        value,
+        unit: "ohm".into(),
+    };
+    assert_eq!(loads, [ohms(25.0), ohms(50.0), ohms(175.0)]);
+    let verdict = |case: usize, name: &str| claim(&j.cases[case], name).verdict;
+    assert_eq!(
+        (verdict(0, "dose"), verdict(1, "dose"), verdict(2, "dose")),
+        (Verdict::Holds, Verdict::Holds, Verdict::Fails)
+    );
+    assert_eq!(verdict(2, "low"), Verdict::DoesNotApply);
+    assert!(claim(&j.cases[2], "low").answer.found != Found::Absent(String::new()));
+    let summary = |k: usize| (j.claims[k].verdict, j.claims[k].worst);
+    assert_eq!(summary(0), (Verdict::Fails, Some(2)));
+    assert_eq!(summary(1).0, Verdict::Holds);
+    assert_eq!(summary(2), (Verdict::Undecided, None));
+}
+
+#[test]
+fn one_case_can_be_fired_by_its_number() {
+    let text = format!(
+        "{STAGE}cases load = 25 ohm, 50 ohm\nreading r = largest voltage across chest / largest current through chest\n"
+    );
+    let c = circuit(&text);
+    let f = fire(
+        &c,
+        &Options {
+            case: Some(1),
+            ..Options::default()
+        },
+    )
+    .unwrap();
+    check(&f, "r", 25.0, 1e-6);
+    let missing = fire(
+        &c,
+        &Options {
+            case: Some(3),
+            ..Options::default()
+        },
+    )
+    .unwrap_err();
+    assert_eq!(missing, StudyError::NoCase { case: 3, of: 2 });
+}
+
+#[test]
+fn a_let_value_can_be_held() {
+    let c = circuit(&format!(
+        "{STAGE}reading r = largest voltage across chest / largest current through chest\n"
+    ));
+    let held = vec![(
+        "load".to_owned(),
+        LetValue::Number {
+            value: 75.0,
+            dimension: Dimension::OHM,
+        },
+    )];
+    let f = fire(
+        &c,
+        &Options {
+            held,
+            ..Options::default()
+        },
+    )
+    .unwrap();
+    check(&f, "r", 75.0, 1e-6);
+    let unknown = vec![("lod".to_owned(), LetValue::Open)];
+    assert!(matches!(
+        fire(
+            &c,
+            &Options {
+                held: unknown,
+                ..Options::default()
+            }
+        ),
+        Err(StudyError::Faults(_))
+    ));
+}
+
+#[test]
+fn the_hook_stops_the_run() {
+    let stop = |p: Progress| p.halvings < 2;
+    let options = Options {
+        hook: Some(&stop),
+        ..Options::default()
+    };
+    assert!(matches!(
+        fire(&circuit(STAGE), &options),
+        Err(StudyError::Cancelled { .. })
+    ));
+}
+
+#[test]
+fn a_limit_of_steps_is_an_error_that_names_it() {
+    let error = fire(
+        &circuit(&format!("{STAGE}limit steps 50\n")),
+        &Options::default(),
+    )
+    .unwrap_err();
+    assert!(error.to_string().contains("steps"), "{error}");
+}
+
+#[test]
+fn the_same_input_gives_the_same_outcome() {
+    let text = format!(
+        "{STAGE}cases load = 25 ohm to 175 ohm, 4 values\nclaim dose: energy into chest is at least 1 J\n"
+    );
+    let one = judge(&circuit(&text), &Options::default()).unwrap();
+    let two = judge(&circuit(&text), &Options::default()).unwrap();
+    for (a, b) in one.cases.iter().zip(&two.cases) {
+        assert_eq!(a.claims, b.claims);
+        assert_eq!(a.balance, b.balance);
+    }
+}
