@@ -1,0 +1,58 @@
+//! `pulsewright.fire/1`: one shot.
+
+use super::shot::events;
+use super::{
+    BalanceRecord, ClaimRecord, EventRecord, HazardRecord, Input, Origin, Program, ReadingRecord,
+    RemarkRecord, Run, StressRecord,
+};
+use pulsewright_study::outcome::Fired;
+use serde::{Deserialize, Serialize};
+
+/// The record of one shot.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct FireRecord {
+    /// `pulsewright.fire/1`.
+    pub record: String,
+    /// The program that wrote it.
+    pub program: Program,
+    /// What was fired.
+    pub input: Input,
+    /// How it was run.
+    pub run: Run,
+    /// The named readings, in the file's order.
+    pub readings: Vec<ReadingRecord>,
+    /// The claims, in the file's order.
+    pub claims: Vec<ClaimRecord>,
+    /// The event log.
+    pub events: Vec<EventRecord>,
+    /// Where the joules went.
+    pub balance: BalanceRecord,
+    /// What each part had to stand.
+    pub stress: Vec<StressRecord>,
+    /// Hazards.
+    pub hazards: Vec<HazardRecord>,
+    /// Remarks.
+    pub remarks: Vec<RemarkRecord>,
+}
+
+/// The record of one shot.
+#[must_use]
+pub fn fire(fired: &Fired, origin: &Origin<'_>) -> FireRecord {
+    FireRecord {
+        record: "pulsewright.fire/1".to_owned(),
+        program: Program::this(),
+        input: Input::new(origin, &fired.set),
+        run: Run::of([fired]),
+        readings: fired.readings.iter().map(Into::into).collect(),
+        claims: fired.claims.iter().map(Into::into).collect(),
+        events: events(fired),
+        balance: (&fired.balance).into(),
+        stress: fired.stress.iter().map(Into::into).collect(),
+        hazards: fired.hazards.iter().map(Into::into).collect(),
+        remarks: fired
+            .remarks
+            .iter()
+            .map(|r| RemarkRecord::new(r, origin.text))
+            .collect(),
+    }
+}

@@ -1,0 +1,64 @@
+//! The pages for people, whole, from one small result; and that they fit their width.
+
+mod sample;
+
+use pulsewright_report::{Look, table};
+
+fn look(width: usize) -> Look {
+    Look {
+        width,
+        colour: false,
+    }
+}
+
+#[test]
+fn the_page_of_a_shot() {
+    insta::assert_snapshot!(table::fire(&sample::fired(), &sample::origin(), look(80)));
+}
+
+#[test]
+fn the_page_of_all_cases() {
+    insta::assert_snapshot!(table::judge(&sample::judged(), &sample::origin(), look(80)));
+}
+
+#[test]
+fn pages_fit_their_width() {
+    for width in [48, 60, 80, 120] {
+        let pages = [
+            table::fire(&sample::fired(), &sample::origin(), look(width)),
+            table::judge(&sample::judged(), &sample::origin(), look(width)),
+        ];
+        for line in pages.iter().flat_map(|p| p.lines()) {
+            assert!(line.chars().count() <= width, "{width}: {line}");
+        }
+    }
+}
+
+#[test]
+fn colour_adds_nothing_but_colour() {
+    let plain = table::judge(&sample::judged(), &sample::origin(), look(80));
+    let coloured = table::judge(
+        &sample::judged(),
+        &sample::origin(),
+        Look {
+            width: 80,
+            colour: true,
+        },
+    );
+    assert_ne!(plain, coloured);
+    assert_eq!(without_escapes(&coloured), plain);
+}
+
+fn without_escapes(text: &str) -> String {
+    let mut out = String::new();
+    let mut inside = false;
+    for c in text.chars() {
+        match (inside, c) {
+            (false, '\u{1b}') => inside = true,
+            (true, 'm') => inside = false,
+            (false, c) => out.push(c),
+            (true, _) => {}
+        }
+    }
+    out
+}

@@ -1,0 +1,93 @@
+//! The records, whole, from one small result; that they read back, and fit their schemas.
+
+mod sample;
+mod schema;
+
+use pulsewright_report::record::{
+    self, Bytes, FireRecord, JudgeRecord, MistakeRecord, MistakesRecord, fire, judge,
+};
+
+fn mistakes() -> MistakesRecord {
+    let mistake = MistakeRecord {
+        code: "P0107".to_owned(),
+        file: "stage.shot".to_owned(),
+        line: Some(3),
+        column: Some(37),
+        span: Some(Bytes { start: 76, end: 78 }),
+        message: "`chest` needs a resistance, and 50 has no unit".to_owned(),
+        label: None,
+        replacement: Some("50 ohm".to_owned()),
+    };
+    MistakesRecord::new(vec![mistake], Vec::new())
+}
+
+#[test]
+fn the_record_of_a_shot() {
+    insta::assert_snapshot!(record::text(&fire(&sample::fired(), &sample::origin())));
+}
+
+#[test]
+fn the_record_of_all_cases() {
+    insta::assert_snapshot!(record::text(&judge(&sample::judged(), &sample::origin())));
+}
+
+#[test]
+fn the_record_of_mistakes() {
+    insta::assert_snapshot!(record::text(&mistakes()));
+}
+
+#[test]
+fn records_read_back_to_the_same() {
+    let shot = fire(&sample::fired(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<FireRecord>(&record::text(&shot)).unwrap(),
+        shot
+    );
+    let cases = judge(&sample::judged(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<JudgeRecord>(&record::text(&cases)).unwrap(),
+        cases
+    );
+    assert_eq!(
+        serde_json::from_str::<MistakesRecord>(&record::text(&mistakes())).unwrap(),
+        mistakes()
+    );
+}
+
+#[test]
+fn records_fit_their_schemas() {
+    schema::check(
+        "pulsewright.fire-1.json",
+        &record::text(&fire(&sample::fired(), &sample::origin())),
+    );
+    schema::check(
+        "pulsewright.judge-1.json",
+        &record::text(&judge(&sample::judged(), &sample::origin())),
+    );
+    schema::check("pulsewright.mistakes-1.json", &record::text(&mistakes()));
+}
+
+#[test]
+fn a_schema_rules_something_out() {
+    let text = record::text(&mistakes()).replace("\"line\": 3", "\"line\": \"three\"");
+    assert!(
+        schema::faults("pulsewright.mistakes-1.json", &text)
+            .iter()
+            .any(|f| f.contains("line"))
+    );
+}
+
+#[test]
+fn what_is_not_finite_is_null_with_a_reason() {
+    let mut fired = sample::fired();
+    fired.readings[0].answer.found = pulsewright_study::Found::Value {
+        value: f64::NAN,
+        bound: 0.0,
+    };
+    fired.balance.residual = f64::INFINITY;
+    let text = record::text(&fire(&fired, &sample::origin()));
+    let back: FireRecord = serde_json::from_str(&text).unwrap();
+    assert_eq!(back.readings[0].answer.value, None);
+    assert!(back.readings[0].answer.unbounded.is_some());
+    assert_eq!(back.balance.residual, None);
+}

@@ -1,0 +1,247 @@
+//! A hand-made result with one of everything, so that pages and records need no run.
+
+use pulsewright_circuit::{Dimension, Span};
+use pulsewright_engine::{Event, Shot};
+use pulsewright_report::Origin;
+use pulsewright_study::outcome::{
+    Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Extreme, Fired, Found, Hazard,
+    Judged, ReadingResult, Remark, Set, SetValue, Stress, Verdict,
+};
+
+/// The text that the remark's span is in.
+pub const TEXT: &str = "title \"Field unit\"\nlet load = 50 ohm\n";
+
+/// Where the sample comes from.
+pub fn origin() -> Origin<'static> {
+    Origin {
+        title: Some("Field unit, damped-sine output stage"),
+        sha256: "e3b0c44298fc1c149afbf4c8996fb92427ae41e4649b934ca495991b7852b855",
+        text: TEXT,
+        set: Vec::new(),
+    }
+}
+
+fn answer(found: Found, dimension: Dimension) -> Answer {
+    Answer {
+        found,
+        dimension,
+        unit: dimension.unit(),
+    }
+}
+
+fn reading(name: &str, text: &str, found: Found, dimension: Dimension) -> ReadingResult {
+    ReadingResult {
+        name: name.to_owned(),
+        text: text.to_owned(),
+        answer: answer(found, dimension),
+    }
+}
+
+fn value(value: f64, bound: f64) -> Found {
+    Found::Value { value, bound }
+}
+
+fn readings() -> Vec<ReadingResult> {
+    vec![
+        reading(
+            "yield",
+            "energy into chest / energy held by bank just before 0 s",
+            value(0.882_352_941_2, 1.21e-8),
+            Dimension::NONE,
+        ),
+        reading(
+            "linked",
+            "highest flux held by choke",
+            value(1.5, 1.2e-7),
+            Dimension::WEBER,
+        ),
+        reading(
+            "specific",
+            "action of chest",
+            value(6.237_2, 4e-7),
+            Dimension::ACTION,
+        ),
+        reading(
+            "brief",
+            "width of voltage across chest at 10 %",
+            Found::Absent(
+                "voltage across chest is still above 48 V at the end of the span".to_owned(),
+            ),
+            Dimension::SECOND,
+        ),
+        reading(
+            "rush",
+            "highest current through fire",
+            Found::Unbounded("an impulse at 1 us".to_owned()),
+            Dimension::AMPERE,
+        ),
+    ]
+}
+
+/// The claim on the dose, with a value.
+fn dose(joules: f64, verdict: Verdict) -> ClaimResult {
+    ClaimResult {
+        name: "dose".to_owned(),
+        text: "energy into chest".to_owned(),
+        answer: answer(value(joules, 1.2e-5), Dimension::JOULE),
+        relation: "is within 15 % or 3 J of 300 J".to_owned(),
+        least: Some(255.0),
+        most: Some(345.0),
+        margin: Some((345.0 - joules).min(joules - 255.0)),
+        verdict,
+        reason: None,
+        answers: vec!["REQ-12".to_owned()],
+    }
+}
+
+fn brief() -> ClaimResult {
+    ClaimResult {
+        name: "brief".to_owned(),
+        text: "width of voltage across chest at 10 %".to_owned(),
+        answer: answer(
+            Found::Absent("voltage across chest is still above 48 V at the end".to_owned()),
+            Dimension::SECOND,
+        ),
+        relation: "is at most 15 ms".to_owned(),
+        least: None,
+        most: Some(15e-3),
+        margin: None,
+        verdict: Verdict::Fails,
+        reason: None,
+        answers: Vec::new(),
+    }
+}
+
+fn load(ohms: f64) -> Set {
+    vec![(
+        "load".to_owned(),
+        SetValue::Number {
+            value: ohms,
+            unit: "ohm".to_owned(),
+        },
+    )]
+}
+
+fn bank() -> Stress {
+    Stress {
+        part: "bank".to_owned(),
+        voltage: Some(Extreme {
+            value: 4700.0,
+            bound: 0.0,
+            time: 0.0,
+        }),
+        current: Some(Extreme {
+            value: 60.225_4,
+            bound: 1e-6,
+            time: 1.301e-3,
+        }),
+        power: Some(Extreme {
+            value: -210_300.0,
+            bound: 0.1,
+            time: 0.9e-3,
+        }),
+        energy: Some((-353.44, 1e-5)),
+        action: Some((6.237_2, 4e-7)),
+    }
+}
+
+fn contact() -> Stress {
+    let rush = Extreme {
+        value: f64::INFINITY,
+        bound: f64::INFINITY,
+        time: 1e-6,
+    };
+    Stress {
+        part: "fire".to_owned(),
+        current: Some(rush),
+        energy: Some((12e-6, 1e-12)),
+        ..Stress::default()
+    }
+}
+
+/// One shot.
+pub fn fired() -> Fired {
+    let event = |time, state, loss, found| Event {
+        time,
+        part: 1,
+        state,
+        charge: 0.0,
+        flux: 0.0,
+        loss,
+        found,
+    };
+    Fired {
+        set: load(50.0),
+        readings: readings(),
+        claims: vec![dose(311.86, Verdict::Holds), brief()],
+        events: vec![
+            (event(1e-6, 1, 0.0, false), 0.0),
+            (event(25.312_4e-3, 0, 12e-6, true), 3.1e-9),
+        ],
+        balance: BalanceResult {
+            stored_start: 353.44,
+            stored_end: 0.000_12,
+            supplied: vec![("feed".to_owned(), 0.0)],
+            dissipated: vec![("choke".to_owned(), 41.57), ("chest".to_owned(), 311.86)],
+            lost_at_events: 12e-6,
+            residual: -1.2e-10,
+            bound: 3.01e-9,
+        },
+        stress: vec![bank(), contact()],
+        hazards: vec![Hazard {
+            part: "bank".to_owned(),
+            voltage: 4700.0,
+            energy: 353.44,
+            at_most_60_v_from: Some(0.0213),
+            estimated: false,
+        }],
+        remarks: vec![Remark {
+            code: "R0203".to_owned(),
+            text: "node `tpo` is touched by one part only; did you mean `top`?".to_owned(),
+            span: Span::new(23, 27),
+        }],
+        defaults: vec!["start at rest".to_owned(), "error at most 1 ppm".to_owned()],
+        method: "trapezoidal rule".to_owned(),
+        span: 30e-3,
+        shot: Shot {
+            steps: 1234,
+            smallest_step: 12e-9,
+            largest_step: 34e-6,
+            ..Shot::default()
+        },
+        channels: vec![Channel {
+            text: "voltage across chest".to_owned(),
+            unit: "V".to_owned(),
+            ..Channel::default()
+        }],
+        parts: vec!["bank".to_owned(), "fire".to_owned()],
+        changes: vec!["closes".to_owned(), "opens".to_owned()],
+    }
+}
+
+/// Two cases.
+pub fn judged() -> Judged {
+    let case = |ohms, joules, verdict| Fired {
+        set: load(ohms),
+        claims: vec![dose(joules, verdict), brief()],
+        ..fired()
+    };
+    Judged {
+        cases: vec![
+            case(25.0, 263.314_285_7, Verdict::Holds),
+            case(150.0, 345.597_879_6, Verdict::Fails),
+        ],
+        claims: vec![
+            ClaimSummary {
+                name: "dose".to_owned(),
+                verdict: Verdict::Fails,
+                worst: Some(1),
+            },
+            ClaimSummary {
+                name: "brief".to_owned(),
+                verdict: Verdict::Fails,
+                worst: Some(0),
+            },
+        ],
+    }
+}
