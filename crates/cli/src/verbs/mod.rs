@@ -1,0 +1,103 @@
+//! The verbs, one a file: from arguments to data and an ending.
+
+mod check;
+mod fire;
+mod judge;
+mod list;
+mod manual;
+mod neaten;
+mod watch;
+mod waveform;
+
+use crate::args::Verb;
+use crate::exit::Ending;
+use crate::input::why;
+use crate::output::Target;
+use crate::say;
+use crate::shell::Shell;
+use crate::trouble::Trouble;
+use pulsewright::report::record;
+
+/// Runs a verb: writes what it brings, or says why it brings nothing.
+pub fn run(verb: Verb, shell: &Shell) -> Ending {
+    let json = matches!(
+        verb,
+        Verb::Check { json: true, .. }
+            | Verb::Fire { json: true, .. }
+            | Verb::Judge { json: true, .. }
+    );
+    let done = match verb {
+        Verb::Check {
+            files,
+            settings,
+            json,
+        } => check::check(&files, &settings.set, json, shell),
+        Verb::List {
+            file,
+            settings,
+            case,
+        } => list::list(&file, &settings.set, case.case, shell),
+        Verb::Fire {
+            file,
+            settings,
+            case,
+            json,
+            strict,
+        } => fire::fire(
+            &file,
+            &settings.set,
+            case.case,
+            fire::Form { json, strict },
+            shell,
+        ),
+        Verb::Judge {
+            file,
+            settings,
+            json,
+        } => judge::judge(&file, &settings.set, json, shell),
+        Verb::Waveform {
+            file,
+            settings,
+            case,
+            every,
+        } => waveform::waveform(&file, &settings.set, case.case, every.as_deref(), shell),
+        Verb::Neaten { files, check } => neaten::neaten(&files, check, shell),
+        Verb::Manual { words } => manual::manual(&words, shell),
+    };
+    done.unwrap_or_else(|trouble| failed(shell, &trouble, json))
+}
+
+/// Hands data over.
+fn deliver(shell: &Shell, bytes: &[u8]) -> Result<(), Trouble> {
+    if shell.stop.came().is_some() {
+        return Err(Trouble::Stopped(None));
+    }
+    shell.target.write(bytes).map_err(|e| {
+        let place = match &shell.target {
+            Target::Standard => "standard output".to_owned(),
+            Target::File(path) => path.display().to_string(),
+        };
+        Trouble::Broke(format!("cannot write {place}: {}", why(&e)))
+    })
+}
+
+/// Says what went wrong; with `--json` the mistakes go to standard output as a record too.
+fn failed(shell: &Shell, trouble: &Trouble, json: bool) -> Ending {
+    say::trouble(shell, trouble);
+    let record = match trouble {
+        Trouble::Mistakes(mistakes) => Some(say::record([mistakes])),
+        Trouble::Usage(text) => Some(say::usage_record(text)),
+        _ => None,
+    };
+    let Some(record) = record.filter(|_| json) else {
+        return trouble.ending(shell.stop.came());
+    };
+    if let Err(e) = Target::Standard.write(record::text(&record).as_bytes()) {
+        say::trouble(
+            shell,
+            &Trouble::Broke(format!("cannot write standard output: {}", why(&e))),
+        );
+        return Ending::Broke;
+    }
+    trouble.ending(shell.stop.came())
+}

@@ -1,0 +1,435 @@
+//! The command as a process: exit codes, streams, files, pipes, signals.
+
+#![allow(clippy::unwrap_used, reason = "what serves tests only may stop them")]
+
+use std::fs;
+use std::io::{Read, Write};
+use std::path::PathBuf;
+use std::process::{Command, Output, Stdio};
+
+/// A discharge of known numbers: 400 J in the bank, all but e⁻¹⁰⁰ of it into the chest.
+const STAGE: &str = r#"title "A bank into a resistor"
+let load = 50 ohm
+capacitor bank  from top to ground = 32 uF, charged to 5 kV
+switch    fire  from top to pad    : open, closes at 1 us
+resistor  chest from pad to ground = load
+span 80 ms
+reading crest = largest current through chest
+"#;
+
+fn folder() -> tempfile::TempDir {
+    tempfile::tempdir().unwrap()
+}
+
+/// The stage with more statements, in a file.
+fn stage(folder: &tempfile::TempDir, more: &str) -> PathBuf {
+    let path = folder.path().join("stage.shot");
+    fs::write(&path, format!("{STAGE}{more}\n")).unwrap();
+    path
+}
+
+fn pulsewright() -> Command {
+    let mut command = Command::new(env!("CARGO_BIN_EXE_pulsewright"));
+    command.stdin(Stdio::null());
+    command
+}
+
+fn run(verb: &str, path: &PathBuf, more: &[&str]) -> Output {
+    pulsewright()
+        .arg(verb)
+        .arg(path)
+        .args(more)
+        .output()
+        .unwrap()
+}
+
+fn out(output: &Output) -> String {
+    String::from_utf8(output.stdout.clone()).unwrap()
+}
+
+fn messages(output: &Output) -> String {
+    String::from_utf8(output.stderr.clone()).unwrap()
+}
+
+fn record(output: &Output) -> serde_json::Value {
+    serde_json::from_slice(&output.stdout).unwrap()
+}
+
+/// Fires or judges the stage with a claim, and compares the exit code.
+fn ends(verb: &str, claim: &str, more: &[&str], code: i32) {
+    let folder = folder();
+    let output = run(verb, &stage(&folder, claim), more);
+    assert_eq!(
+        output.status.code(),
+        Some(code),
+        "{}{}",
+        out(&output),
+        messages(&output)
+    );
+}
+
+const HOLDS: &str = "claim dose: energy into chest is within 1 % of 400 J";
+const FAILS: &str = "claim dose: energy into chest is within 1 % of 300 J";
+const UNDECIDED: &str = "claim dose: energy into chest is at least 1 J, when load >= 1 kohm";
+
+#[test]
+fn judge_ends_with_what_the_claims_say() {
+    ends("judge", HOLDS, &[], 0);
+    ends("judge", FAILS, &[], 1);
+    ends("judge", UNDECIDED, &[], 4);
+    ends(
+        "judge",
+        &format!("{FAILS}\nclaim other: energy into chest is at least 1 J, when load >= 1 kohm"),
+        &[],
+        1,
+    );
+}
+
+#[test]
+fn judge_without_claims_is_a_mistake() {
+    ends("judge", "", &[], 2);
+}
+
+#[test]
+fn fire_ends_well_even_where_a_claim_fails_unless_strict() {
+    ends("fire", FAILS, &[], 0);
+    ends("fire", FAILS, &["--strict"], 1);
+    ends("fire", HOLDS, &["--strict"], 0);
+}
+
+#[test]
+fn a_file_that_is_not_there_breaks_the_run() {
+    let output = run("fire", &folder().path().join("nothing.shot"), &["--json"]);
+    assert_eq!(output.status.code(), Some(3));
+    assert!(messages(&output).contains("there is no such file"));
+    assert!(output.stdout.is_empty());
+}
+
+#[test]
+fn a_limit_breaks_the_run() {
+    ends("fire", "time step 1 us\nlimit steps 10", &[], 3);
+}
+
+#[test]
+fn a_wrong_word_on_the_command_line_gets_the_near_one() {
+    let output = pulsewright().arg("fier").output().unwrap();
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        messages(&output).contains("'fire'"),
+        "{}",
+        messages(&output)
+    );
+}
+
+#[test]
+fn a_mistake_leaves_standard_output_empty() {
+    let folder = folder();
+    let output = run(
+        "fire",
+        &stage(&folder, "resistor path from top to ground = 5"),
+        &[],
+    );
+    assert_eq!(output.status.code(), Some(2));
+    assert!(output.stdout.is_empty());
+    assert!(
+        messages(&output).contains("stage.shot:8:36: mistake P0107"),
+        "{}",
+        messages(&output)
+    );
+}
+
+#[test]
+fn with_json_a_mistake_is_a_record_too() {
+    let folder = folder();
+    let output = run(
+        "fire",
+        &stage(&folder, "resistor path from top to ground = 5"),
+        &["--json"],
+    );
+    assert_eq!(output.status.code(), Some(2));
+    let record = record(&output);
+    assert_eq!(record["record"], "pulsewright.mistakes/1");
+    assert_eq!(record["mistakes"][0]["code"], "P0107");
+    assert_eq!(record["mistakes"][0]["line"], 8);
+    assert_eq!(record["mistakes"][0]["replacement"], "5 ohm");
+    assert!(messages(&output).contains("mistake P0107"));
+}
+
+#[test]
+fn a_loop_of_sources_is_a_mistake_at_its_last_source() {
+    let folder = folder();
+    let more = "voltage one from a to ground = 5 V\nvoltage two from a to ground = 6 V";
+    for verb in ["check", "fire"] {
+        let output = run(verb, &stage(&folder, more), &[]);
+        assert_eq!(output.status.code(), Some(2), "{verb}");
+        assert!(
+            messages(&output).contains("stage.shot:9:9: mistake P0751"),
+            "{}",
+            messages(&output)
+        );
+    }
+}
+
+#[test]
+fn a_record_names_its_input_and_holds_the_readings() {
+    let folder = folder();
+    let path = stage(&folder, HOLDS);
+    let record = record(&run("fire", &path, &["--json", "--set", "load=100 ohm"]));
+    assert_eq!(record["record"], "pulsewright.fire/1");
+    assert_eq!(record["input"]["title"], "A bank into a resistor");
+    assert_eq!(
+        record["input"]["sha256"],
+        pulsewright::sha256(&fs::read(&path).unwrap())
+    );
+    assert_eq!(
+        record["input"]["set"],
+        serde_json::json!({"load": {"value": 100.0, "unit": "ohm"}})
+    );
+    let crest = &record["readings"][0];
+    let (value, bound) = (
+        crest["value"].as_f64().unwrap(),
+        crest["bound"].as_f64().unwrap(),
+    );
+    assert!((value - 50.0).abs() <= bound + 1e-9, "{crest}");
+    assert_eq!(record["claims"][0]["verdict"], "holds");
+    assert_eq!(record["events"][0]["part"], "fire");
+}
+
+#[test]
+fn the_same_input_gives_the_same_bytes() {
+    let folder = folder();
+    let path = stage(&folder, HOLDS);
+    for verb in ["fire", "judge"] {
+        assert_eq!(
+            run(verb, &path, &["--json"]).stdout,
+            run(verb, &path, &["--json"]).stdout
+        );
+    }
+}
+
+#[test]
+fn a_setting_without_sense_is_a_mistake() {
+    for (written, said) in [
+        ("load", "a name, `=` and a value"),
+        ("load=3 V", "load"),
+        ("lod=3 ohm", "load"),
+    ] {
+        let folder = folder();
+        let output = run("fire", &stage(&folder, ""), &["--set", written]);
+        assert_eq!(output.status.code(), Some(2), "{written}");
+        assert!(
+            messages(&output).contains(said),
+            "{written}: {}",
+            messages(&output)
+        );
+    }
+}
+
+#[test]
+fn a_case_takes_the_place_of_the_let_values() {
+    let folder = folder();
+    let path = stage(&folder, "cases load = 25 ohm, 100 ohm");
+    let record = record(&run("fire", &path, &["--json", "--case", "2"]));
+    assert_eq!(record["input"]["set"]["load"]["value"], 100.0);
+    let output = run("fire", &path, &["--case", "3"]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(messages(&output).contains("there are 2 cases"));
+}
+
+#[test]
+fn a_dash_reads_standard_input() {
+    let mut child = Command::new(env!("CARGO_BIN_EXE_pulsewright"))
+        .args(["judge", "-", "--json"])
+        .stdin(Stdio::piped())
+        .stdout(Stdio::piped())
+        .stderr(Stdio::piped())
+        .spawn()
+        .unwrap();
+    child
+        .stdin
+        .take()
+        .unwrap()
+        .write_all(format!("{STAGE}{HOLDS}\n").as_bytes())
+        .unwrap();
+    let output = child.wait_with_output().unwrap();
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    assert_eq!(record(&output)["claims"][0]["verdict"], "holds");
+}
+
+#[test]
+fn a_file_is_written_whole_or_not_at_all() {
+    let folder = folder();
+    let target = folder.path().join("shot.json");
+    fs::write(&target, "old").unwrap();
+    let name = target.to_str().unwrap();
+    let failed = run("fire", &stage(&folder, "oops"), &["--json", "-o", name]);
+    assert_eq!(failed.status.code(), Some(2));
+    assert_eq!(fs::read_to_string(&target).unwrap(), "old");
+    let done = run("fire", &stage(&folder, HOLDS), &["--json", "-o", name]);
+    assert_eq!(done.status.code(), Some(0), "{}", messages(&done));
+    assert!(done.stdout.is_empty());
+    assert!(fs::read_to_string(&target).unwrap().ends_with("}\n"));
+    assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 2);
+}
+
+#[test]
+fn a_folder_that_is_not_there_breaks_the_run() {
+    let folder = folder();
+    let target = folder.path().join("no/such/shot.json");
+    let output = run(
+        "fire",
+        &stage(&folder, ""),
+        &["-o", target.to_str().unwrap()],
+    );
+    assert_eq!(output.status.code(), Some(3));
+    assert!(output.stdout.is_empty());
+}
+
+#[test]
+fn a_closed_pipe_is_no_error() {
+    let folder = folder();
+    let mut child = pulsewright()
+        .arg("waveform")
+        .arg(stage(&folder, ""))
+        .args(["--every", "100 ns"])
+        .stdout(Stdio::piped())
+        .stderr(Stdio::piped())
+        .spawn()
+        .unwrap();
+    let mut first = [0; 4];
+    let mut pipe = child.stdout.take().unwrap();
+    pipe.read_exact(&mut first).unwrap();
+    drop(pipe);
+    assert_eq!(&first, b"time");
+    let output = child.wait_with_output().unwrap();
+    assert_eq!(output.status.code(), Some(0));
+    assert!(output.stderr.is_empty(), "{}", messages(&output));
+}
+
+#[test]
+fn a_waveform_has_units_and_two_rows_an_event() {
+    let folder = folder();
+    let output = run(
+        "waveform",
+        &stage(&folder, "channels voltage across chest"),
+        &[],
+    );
+    let text = out(&output);
+    assert!(
+        text.starts_with("time (s),voltage across chest (V)\n"),
+        "{text}"
+    );
+    assert_eq!(text.lines().filter(|l| l.starts_with("1e-6,")).count(), 2);
+    let rows = out(&run(
+        "waveform",
+        &stage(&folder, "channels voltage across chest"),
+        &["--every", "10 ms"],
+    ));
+    assert_eq!(rows.lines().count(), 10);
+}
+
+#[test]
+fn neaten_settles() {
+    let folder = folder();
+    let path = stage(&folder, "");
+    let neat = run("neaten", &path, &[]);
+    assert_eq!(neat.status.code(), Some(0));
+    let other = folder.path().join("neat.shot");
+    fs::write(&other, &neat.stdout).unwrap();
+    assert_eq!(run("neaten", &other, &["--check"]).status.code(), Some(0));
+    fs::write(&other, "let load=50ohm\nspan 1ms\n").unwrap();
+    assert_eq!(run("neaten", &other, &["--check"]).status.code(), Some(1));
+}
+
+#[test]
+fn check_takes_several_files_and_ends_with_the_worst() {
+    let folder = folder();
+    let good = stage(&folder, "");
+    let bad = folder.path().join("bad.shot");
+    fs::write(&bad, "span 1 kV\n").unwrap();
+    let output = pulsewright()
+        .arg("check")
+        .args([&good, &bad])
+        .output()
+        .unwrap();
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        out(&output).contains("stage.shot (A bank into a resistor): no mistakes; 3 parts"),
+        "{}",
+        out(&output)
+    );
+    assert!(messages(&output).contains("bad.shot:1:6"));
+}
+
+#[test]
+fn help_fits_a_screen_and_says_it_all_at_length() {
+    let short = out(&pulsewright().arg("-h").output().unwrap());
+    assert!(short.lines().count() <= 24, "{short}");
+    assert!(short.contains("pulsewright judge stage.shot"));
+    let long = out(&pulsewright().arg("--help").output().unwrap());
+    for words in [
+        "exit codes:",
+        "no safety approval",
+        "qualified people",
+        "no medical device",
+    ] {
+        assert!(long.contains(words), "{words}");
+    }
+}
+
+#[test]
+fn the_manual_explains_codes_and_verbs() {
+    for word in ["P0107", "p0751", "judge", "claim"] {
+        let output = pulsewright().args(["manual", word]).output().unwrap();
+        assert_eq!(
+            output.status.code(),
+            Some(0),
+            "{word}: {}",
+            messages(&output)
+        );
+        assert!(!output.stdout.is_empty());
+    }
+    assert_eq!(
+        pulsewright()
+            .args(["manual", "gobbledygook"])
+            .output()
+            .unwrap()
+            .status
+            .code(),
+        Some(2)
+    );
+}
+
+#[cfg(unix)]
+#[test]
+fn a_signal_ends_a_run_with_its_code() {
+    for (signal, code) in [("INT", 130), ("TERM", 143)] {
+        let folder = folder();
+        let path = stage(&folder, "time step 10 ns\nlimit steps 10_000_000_000");
+        let target = folder.path().join("shot.json");
+        let child = pulsewright()
+            .arg("fire")
+            .arg(&path)
+            .args(["--json", "-o", target.to_str().unwrap()])
+            .stdout(Stdio::piped())
+            .stderr(Stdio::piped())
+            .spawn()
+            .unwrap();
+        std::thread::sleep(std::time::Duration::from_millis(500));
+        let sent = Command::new("kill")
+            .arg(format!("-{signal}"))
+            .arg(child.id().to_string())
+            .status()
+            .unwrap();
+        assert!(sent.success());
+        let output = child.wait_with_output().unwrap();
+        assert_eq!(output.status.code(), Some(code), "{}", messages(&output));
+        assert!(
+            messages(&output).contains("interrupted"),
+            "{}",
+            messages(&output)
+        );
+        assert!(output.stdout.is_empty());
+        assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 1);
+    }
+}
