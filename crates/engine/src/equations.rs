@@ -279,7 +279,7 @@ impl Equations {
                         }
                     }
                 }
-                (None, Mode::Inductance(j)) if theta != 0.0 => {
+                (None, Mode::Inductance(j)) => {
                     for &(i, w) in &net.inductances[j].inverse {
                         let of = &net.branches[net.inductances[i].branch];
                         for (row, sign) in rows {
@@ -331,9 +331,7 @@ impl Equations {
             Mode::Capacitance(c) => match self.loop_of[k] {
                 None => {
                     add_voltage(m, row, b.a, b.b, 1.0);
-                    if theta != 0.0 {
-                        m.add_triplet(row, row, -theta / net.capacitances[c].farads);
-                    }
+                    m.add_triplet(row, row, -theta / net.capacitances[c].farads);
                 }
                 Some(l) => {
                     for &(j, sign) in &self.topology.loops[l].1 {
@@ -476,8 +474,11 @@ impl Equations {
         if let Some(i) = self.factors.iter().position(|(b, _)| *b == bits) {
             return Ok(i);
         }
-        let f =
-            Factor::new(&self.assemble(net, theta)).map_err(|s| s.column.unwrap_or(usize::MAX))?;
+        let f = Factor::like(
+            self.factors.last().map(|(_, f)| f),
+            &self.assemble(net, theta),
+        )
+        .map_err(|s| s.column.unwrap_or(usize::MAX))?;
         let kept = if net.unknowns() > LARGE {
             FACTORS_KEPT_LARGE
         } else {

@@ -7,6 +7,8 @@
 //! circuits have no dense blocks, so never the supernodal one. The library reports no zero
 //! pivots, so the first solution is checked against the matrix.
 
+use std::sync::Arc;
+
 use faer::dyn_stack::{MemBuffer, MemStack};
 use faer::linalg::lu::partial_pivoting::factor::PartialPivLuParams;
 use faer::sparse::linalg::SupernodalThreshold;
@@ -46,10 +48,17 @@ pub struct Dense {
 
 /// Sparse LU of faer with its scratch memory.
 pub struct Sparse {
-    symbolic: SymbolicLu<usize>,
+    pattern: Arc<Pattern>,
     numeric: NumericLu<usize, f64>,
     scale: Vec<f64>,
     scratch: MemBuffer,
+}
+
+/// Where a sparse matrix has entries, and the symbolic work that hangs on it alone.
+struct Pattern {
+    starts: Vec<usize>,
+    rows: Vec<usize>,
+    symbolic: SymbolicLu<usize>,
 }
 
 impl Factor {
@@ -59,11 +68,24 @@ impl Factor {
     ///
     /// [`Singular`] where no pivot is left, or the solution does not satisfy the equations.
     pub fn new(matrix: &TriMat<f64>) -> Result<Factor, Singular> {
+        Factor::like(None, matrix)
+    }
+
+    /// As [`Factor::new`], with the symbolic work of another factorisation where the pattern of
+    /// entries is the same.
+    ///
+    /// # Errors
+    ///
+    /// As [`Factor::new`].
+    pub fn like(other: Option<&Factor>, matrix: &TriMat<f64>) -> Result<Factor, Singular> {
         if matrix.rows() <= DENSE_AT_MOST {
-            Dense::new(matrix).map(Factor::Dense)
-        } else {
-            Sparse::new(&matrix.to_csc()).map(|s| Factor::Sparse(Box::new(s)))
+            return Dense::new(matrix).map(Factor::Dense);
         }
+        let known = match other {
+            Some(Factor::Sparse(s)) => Some(&s.pattern),
+            _ => None,
+        };
+        Sparse::new(known, &matrix.to_csc()).map(|s| Factor::Sparse(Box::new(s)))
     }
 
     /// Solves in place, without allocation.
@@ -159,12 +181,33 @@ impl Dense {
     }
 }
 
+impl Pattern {
+    fn new(starts: &[usize], rows: &[usize]) -> Result<Pattern, Singular> {
+        let n = starts.len().saturating_sub(1);
+        let view = SymbolicSparseColMatRef::new_checked(n, n, starts, None, rows);
+        let params = LuSymbolicParams {
+            supernodal_flop_ratio_threshold: SupernodalThreshold::FORCE_SIMPLICIAL,
+            ..Default::default()
+        };
+        let symbolic =
+            factorize_symbolic_lu(view, params).map_err(|_| Singular { column: None })?;
+        Ok(Pattern {
+            starts: starts.to_vec(),
+            rows: rows.to_vec(),
+            symbolic,
+        })
+    }
+}
+
 impl Sparse {
-    fn new(matrix: &CsMat<f64>) -> Result<Sparse, Singular> {
+    fn new(known: Option<&Arc<Pattern>>, matrix: &CsMat<f64>) -> Result<Sparse, Singular> {
         let n = matrix.rows();
         let starts = matrix.indptr();
-        let starts = starts.raw_storage();
-        let rows = matrix.indices();
+        let (starts, rows) = (starts.raw_storage(), matrix.indices());
+        let pattern = match known.filter(|p| p.starts == starts && p.rows == rows) {
+            Some(pattern) => Arc::clone(pattern),
+            None => Arc::new(Pattern::new(starts, rows)?),
+        };
         let scale = row_scales(n, rows.iter().copied().zip(matrix.data().iter().copied()));
         let values: Vec<f64> = matrix
             .data()
@@ -172,13 +215,8 @@ impl Sparse {
             .zip(rows)
             .map(|(v, &r)| v * scale[r])
             .collect();
-        let pattern = SymbolicSparseColMatRef::new_checked(n, n, starts, None, rows);
-        let params = LuSymbolicParams {
-            supernodal_flop_ratio_threshold: SupernodalThreshold::FORCE_SIMPLICIAL,
-            ..Default::default()
-        };
-        let symbolic =
-            factorize_symbolic_lu(pattern, params).map_err(|_| Singular { column: None })?;
+        let view = SymbolicSparseColMatRef::new_checked(n, n, starts, None, rows);
+        let symbolic = &pattern.symbolic;
         let mut numeric = NumericLu::new();
         let spec: Spec<PartialPivLuParams, f64> = Spec::default();
         let mut scratch =
@@ -186,7 +224,7 @@ impl Sparse {
         symbolic
             .factorize_numeric_lu(
                 &mut numeric,
-                SparseColMatRef::new(pattern, &values),
+                SparseColMatRef::new(view, &values),
                 Par::Seq,
                 MemStack::new(&mut scratch),
                 spec,
@@ -194,7 +232,7 @@ impl Sparse {
             .map_err(|_| Singular { column: None })?;
         let scratch = MemBuffer::new(symbolic.solve_in_place_scratch::<f64>(1, Par::Seq));
         let mut sparse = Sparse {
-            symbolic,
+            pattern,
             numeric,
             scale,
             scratch,
@@ -207,8 +245,7 @@ impl Sparse {
     fn check(&mut self, matrix: &CsMat<f64>) -> Result<(), Singular> {
         let n = matrix.rows();
         let mut x = vec![0.0; n];
-        for (column, c) in matrix.outer_iterator().zip(0..) {
-            let _: usize = c;
+        for column in matrix.outer_iterator() {
             for (r, v) in column.iter() {
                 x[r] += v;
             }
@@ -230,7 +267,7 @@ impl Sparse {
             *v *= s;
         }
         let n = x.len();
-        LuRef::new_unchecked(&self.symbolic, &self.numeric).solve_in_place_with_conj(
+        LuRef::new_unchecked(&self.pattern.symbolic, &self.numeric).solve_in_place_with_conj(
             Conj::No,
             MatMut::from_column_major_slice_mut(x, n, 1),
             Par::Seq,
