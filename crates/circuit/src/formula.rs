@@ -9,6 +9,7 @@ use crate::setup::{NodeIndex, PartIndex, SetEdge};
 
 /// A quantity that can be read off the circuit at an instant.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 #[non_exhaustive]
 pub enum Probe {
     /// First node less second node of a part, V.

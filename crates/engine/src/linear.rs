@@ -43,6 +43,8 @@ pub struct Dense {
     lu: Vec<f64>,
     order: Vec<usize>,
     scale: Vec<f64>,
+    /// Reciprocals of the pivots.
+    inverse: Vec<f64>,
     work: Vec<f64>,
 }
 
@@ -113,9 +115,15 @@ impl Dense {
             lu,
             order: (0..n).collect(),
             scale,
+            inverse: vec![0.0; n],
             work: vec![0.0; n],
         };
         d.eliminate()?;
+        for k in 0..n {
+            d.inverse[k] = 1.0 / d.lu[k * n + k];
+        }
+        let scale: Vec<f64> = d.order.iter().map(|&r| d.scale[r]).collect();
+        d.scale = scale;
         Ok(d)
     }
 
@@ -160,25 +168,24 @@ impl Dense {
 
     fn solve(&mut self, x: &mut [f64]) {
         let n = self.n;
-        for (w, &r) in self.work.iter_mut().zip(&self.order) {
-            *w = x[r] * self.scale[r];
+        let work = self.work.as_mut_slice();
+        for ((w, &r), s) in work.iter_mut().zip(&self.order).zip(&self.scale) {
+            *w = x[r] * s;
         }
-        for k in 0..n {
-            let (done, rest) = self.work.split_at_mut(k);
-            let row = &self.lu[k * n..k * n + k];
-            rest[0] -= row.iter().zip(done.iter()).map(|(a, b)| a * b).sum::<f64>();
+        for (k, row) in self.lu.chunks_exact(n).enumerate() {
+            let (done, rest) = work.split_at_mut(k);
+            rest[0] -= dot(&row[..k], done);
         }
-        for k in (0..n).rev() {
-            let row = &self.lu[k * n..(k + 1) * n];
-            let sum: f64 = row[k + 1..]
-                .iter()
-                .zip(&self.work[k + 1..])
-                .map(|(a, b)| a * b)
-                .sum();
-            self.work[k] = (self.work[k] - sum) / row[k];
+        for (k, row) in self.lu.chunks_exact(n).enumerate().rev() {
+            let (rest, known) = work.split_at_mut(k + 1);
+            rest[k] = (rest[k] - dot(&row[k + 1..], known)) * self.inverse[k];
         }
-        x.copy_from_slice(&self.work);
+        x.copy_from_slice(work);
     }
+}
+
+fn dot(a: &[f64], b: &[f64]) -> f64 {
+    a.iter().zip(b).map(|(x, y)| x * y).sum()
 }
 
 impl Pattern {

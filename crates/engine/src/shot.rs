@@ -59,6 +59,7 @@ pub enum Mesh<'a> {
 
 /// What a shot brought.
 #[derive(Clone, Debug, Default)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Shot {
     /// What was recorded, in the order of the vectors in [`Stretch`] and [`Jump`].
     pub probes: Vec<Probe>,
@@ -86,6 +87,7 @@ pub struct Shot {
 
 /// A smooth piece of a shot.
 #[derive(Clone, Debug, Default)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Stretch {
     /// Mesh points, s, ascending; at least two, the first and last are the stretch's ends.
     pub times: Vec<f64>,
@@ -110,6 +112,7 @@ pub struct Stretch {
 
 /// What ends a stretch at an instant that had to be found.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub enum Cause {
     /// A trigger of a switch's action.
     Trigger {
@@ -127,6 +130,7 @@ pub enum Cause {
 
 /// An instant of abrupt change.
 #[derive(Clone, Debug, Default)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Jump {
     /// The instant, s.
     pub time: f64,
@@ -144,6 +148,7 @@ pub struct Jump {
 
 /// A line of the event log.
 #[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Event {
     /// The instant, s.
     pub time: f64,
@@ -163,6 +168,7 @@ pub struct Event {
 
 /// Where the joules went. Vectors are by part.
 #[derive(Clone, Debug, Default)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Balance {
     /// Stored as stated, before anything is equalised, J.
     pub stored_start: f64,
@@ -178,6 +184,7 @@ pub struct Balance {
 
 /// Something noticed during a shot that its reader should know.
 #[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 #[non_exhaustive]
 #[allow(missing_docs, reason = "named as the words of the message")]
 pub enum Notice {

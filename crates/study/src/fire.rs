@@ -11,7 +11,7 @@ use pulsewright_engine::Event;
 
 use crate::cases::case_set;
 use crate::channels::channels;
-use crate::claims::{Bounded, Judgement, Limits, judge, limits};
+use crate::claims::{Bounded, Judgement, Limits, expressions, judge, limits};
 use crate::error::StudyError;
 use crate::hazards::hazards;
 use crate::ladder::{Ladder, Turn};
@@ -21,6 +21,7 @@ use crate::plan::Plan;
 use crate::readings::{Case, Reader};
 use crate::remarks::remarks;
 use crate::series::{Rules, Series};
+use crate::waveform::Record;
 
 /// Fires one shot at the nominal let-values, or at those of `options.case`, and judges it.
 ///
@@ -74,7 +75,10 @@ pub(crate) fn run(
         } else {
             Vec::new()
         },
-        hazards: hazards(&plan, reader.record()),
+        hazards: hazards(
+            &plan,
+            &Record::new(ladder.stores.as_ref().unwrap_or(&ladder.shot)),
+        ),
         remarks: remarks(circuit, &setup, &ladder.shot),
         defaults: circuit.defaults(),
         method: setup.method.words().to_owned(),
@@ -113,18 +117,19 @@ struct Judge<'p, 'a> {
 impl Judge<'_, '_> {
     /// Whether every claim that applies is decided, or no further mesh would decide it.
     fn is_decided(&self, series: &[Series], rules: Rules) -> bool {
-        let mut claims = self
-            .plan
-            .claims()
-            .iter()
-            .zip(&self.applies)
-            .filter(|(_, applies)| **applies);
-        claims.all(|(claim, _)| {
+        let claims = self.plan.claims().iter().zip(&self.applies);
+        claims.filter(|(_, applies)| **applies).all(|(claim, _)| {
             self.judgement(claim, series, rules).1.verdict != Verdict::Undecided
-                || self
-                    .read(&claim.reading, series)
-                    .is_none_or(|s| s.is_final(rules))
+                || self.is_final(claim, series, rules)
         })
+    }
+
+    /// Whether no further mesh would narrow what a claim compares.
+    fn is_final(&self, claim: &Claim, series: &[Series], rules: Rules) -> bool {
+        let mut all = expressions(&claim.relation, claim.allowing.as_ref());
+        all.push(&claim.reading);
+        let read = all.into_iter().filter_map(|e| self.read(e, series));
+        read.into_iter().all(|s| s.is_final(rules))
     }
 
     fn read<'s>(&self, expr: &Expr, series: &'s [Series]) -> Option<&'s Series> {

@@ -6,6 +6,7 @@
 //! allowed error and every claim decided, and ends at the limit of steps, at what fits into
 //! memory, or where more meshes narrow nothing.
 
+use pulsewright_circuit::Probe;
 use pulsewright_circuit::draft::Method;
 use pulsewright_engine::{Failure, Mesh, Request, Shot, fire};
 
@@ -21,7 +22,7 @@ use crate::stress::Loads;
 
 /// Error of a step of the first mesh, over the scale of the states: coarse, but so that three
 /// halvings are mostly enough for a part in a million.
-const TOLERANCE: f64 = 1e-3;
+const TOLERANCE: f64 = 5e-5;
 /// How often the first mesh is halved at least and at most.
 const LEAST: u32 = 3;
 const MOST: u32 = 12;
@@ -40,6 +41,8 @@ pub struct Ladder {
     pub loads: Loads,
     /// The shot that is reported: the finest, or the first where steps are fixed.
     pub shot: Shot,
+    /// A shot that recorded what hazards are read off, where the reported one did not.
+    pub stores: Option<Shot>,
     /// How its numbers are read.
     pub rules: Rules,
 }
@@ -94,7 +97,7 @@ impl Ladder {
                 break;
             }
             let shot = match climb.shoot(Mesh::Halved { of: &first, times }, times) {
-                Err(StudyError::Engine(Failure::Limit { .. })) if more => break,
+                Err(StudyError::Engine(Failure::Limit { .. })) if more || fixed.is_some() => break,
                 other => other?,
             };
             climb.take(&shot);
@@ -105,7 +108,12 @@ impl Ladder {
         } else {
             finest.unwrap_or(first)
         };
-        Ok(climb.finish(shot))
+        let stores = if plan.stores_apart {
+            Some(climb.stores(mesh)?)
+        } else {
+            None
+        };
+        Ok(climb.finish(shot, stores))
     }
 }
 
@@ -124,6 +132,25 @@ impl<'p, 'a, 'o> Climb<'p, 'a, 'o> {
     }
 
     fn shoot(&self, mesh: Mesh<'_>, halvings: u32) -> Result<Shot, StudyError> {
+        self.shoot_for(self.plan.probes.clone(), mesh, halvings)
+    }
+
+    /// A shot that records what hazards are read off.
+    fn stores(&self, mesh: Mesh<'_>) -> Result<Shot, StudyError> {
+        let probes = self
+            .plan
+            .store_probes()
+            .chain([Probe::EnergyStored])
+            .collect();
+        self.shoot_for(probes, mesh, 0)
+    }
+
+    fn shoot_for(
+        &self,
+        probes: Vec<Probe>,
+        mesh: Mesh<'_>,
+        halvings: u32,
+    ) -> Result<Shot, StudyError> {
         let span = self.plan.case.setup.span;
         let told = |time: f64| {
             let Turn { case, of } = self.turn;
@@ -137,7 +164,7 @@ impl<'p, 'a, 'o> Climb<'p, 'a, 'o> {
                 })
             })
         };
-        let mut request = Request::new(self.plan.probes.clone(), mesh);
+        let mut request = Request::new(probes, mesh);
         request.landings = self.plan.landings.clone();
         request.hook = Some(&told);
         Ok(fire(self.plan.case.setup, &request)?)
@@ -186,7 +213,7 @@ impl<'p, 'a, 'o> Climb<'p, 'a, 'o> {
         steps > self.plan.case.setup.limits.steps || numbers > NUMBERS
     }
 
-    fn finish(self, shot: Shot) -> Ladder {
+    fn finish(self, shot: Shot, stores: Option<Shot>) -> Ladder {
         let rules = self.rules();
         Ladder {
             readings: self.readings,
@@ -194,6 +221,7 @@ impl<'p, 'a, 'o> Climb<'p, 'a, 'o> {
             log: self.log,
             loads: self.loads,
             shot,
+            stores,
             rules,
         }
     }

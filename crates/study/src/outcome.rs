@@ -201,6 +201,7 @@ pub struct Remark {
 
 /// One shot, read and judged.
 #[derive(Clone, Debug)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Fired {
     /// The let-values that were set or varied.
     pub set: Set,
@@ -252,6 +253,7 @@ pub struct Channel {
 
 /// Every case, judged.
 #[derive(Clone, Debug)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
 pub struct Judged {
     /// The cases in order, the last stated let-value running fastest; one where there are none.
     pub cases: Vec<Fired>,

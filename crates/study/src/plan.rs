@@ -16,8 +16,10 @@ use crate::readings::{Case, needs};
 
 /// How many channels are taken where none is stated.
 const CHANNELS: usize = 8;
-/// Up to how many parts stress and hazards are read.
-pub const STRESS_PARTS: usize = 200;
+/// Up to how many parts stress is read, and hazards along with the readings.
+const STRESS_PARTS: usize = 200;
+/// Up to how many capacitors hazards are read at all; charged ones come first.
+const STORES: usize = 2000;
 
 /// What a case is fired for.
 pub struct Plan<'a> {
@@ -35,6 +37,8 @@ pub struct Plan<'a> {
     pub stress: bool,
     /// Capacitors whose stored energy is watched, by index, with their capacitance, F.
     pub stores: Vec<(usize, f64)>,
+    /// Whether they are watched in a shot of their own, there being many parts.
+    pub stores_apart: bool,
 }
 
 impl<'a> Plan<'a> {
@@ -59,7 +63,8 @@ impl<'a> Plan<'a> {
             probes: Vec::new(),
             landings: Vec::new(),
             stress: options.stress && few,
-            stores: if few { stores(case) } else { Vec::new() },
+            stores: stores(case),
+            stores_apart: !few,
         };
         plan.record();
         plan
@@ -75,7 +80,9 @@ impl<'a> Plan<'a> {
         let needed = needs(case, &self.readings);
         all.extend(needed.probes);
         all.push(Probe::EnergyStored);
-        all.extend(self.stores.iter().map(|(part, _)| Probe::ChargeHeld(*part)));
+        if !self.stores_apart {
+            all.extend(self.store_probes());
+        }
         if self.stress {
             for part in 0..case.setup.parts.len() {
                 all.extend(
@@ -95,6 +102,11 @@ impl<'a> Plan<'a> {
         all.retain(|p| known.insert(*p));
         self.probes = all;
         self.landings = needed.landings;
+    }
+
+    /// What hazards are read off.
+    pub fn store_probes(&self) -> impl Iterator<Item = Probe> + use<'_> {
+        self.stores.iter().map(|(part, _)| Probe::ChargeHeld(*part))
     }
 
     /// Where an expression stands among those read.
@@ -131,12 +143,22 @@ fn readings(case: Case<'_>) -> Vec<Expr> {
 }
 
 fn stores(case: Case<'_>) -> Vec<(usize, f64)> {
-    let farads = |e: &Element| match e {
-        Element::Capacitor { farads, .. } => Some(*farads),
-        _ => None,
-    };
-    let parts = case.setup.parts.iter().enumerate();
-    parts
-        .filter_map(|(i, p)| Some((i, farads(&p.element)?)))
+    let mut found: Vec<(bool, usize, f64)> = Vec::new();
+    for (i, part) in case.setup.parts.iter().enumerate() {
+        if let Element::Capacitor {
+            farads, charged, ..
+        } = part.element
+        {
+            found.push((charged.is_none_or(|v| v == 0.0), i, farads));
+        }
+    }
+    if found.len() > STORES {
+        found.sort_by_key(|(idle, i, _)| (*idle, *i));
+        found.truncate(STORES);
+        found.sort_by_key(|(_, i, _)| *i);
+    }
+    found
+        .into_iter()
+        .map(|(_, i, farads)| (i, farads))
         .collect()
 }

@@ -3,7 +3,7 @@
 //! A reading may exist on one mesh and not on another (a crest that just touches a level). Then
 //! only the finest meshes on which it exists count; where the very last one brought it about,
 //! its bound is its own scale. Refinement of a reading ends when its bound is within the allowed
-//! error, at rounding, or when two more meshes no longer narrow it.
+//! error, at rounding, or when two more meshes no longer halve the difference between neighbours.
 
 use crate::bounds::{Estimate, Order, Precision, estimate};
 use crate::outcome::Found;
@@ -128,11 +128,14 @@ impl Series {
         if e.bound <= 4.0 * round {
             return true;
         }
-        let before = n
-            .checked_sub(2)
-            .filter(|_| n >= PATIENCE)
-            .and_then(|m| self.estimate(m, rules));
-        before.is_some_and(|(b, ..)| e.bound > 0.7 * b.bound)
+        let values = self.trailing(n);
+        match values.as_slice() {
+            [.., a, b, c, d] if n >= PATIENCE => {
+                let (before, last) = ((b.value - a.value).abs(), (d.value - c.value).abs());
+                last > 0.5 * before
+            }
+            _ => false,
+        }
     }
 }
 

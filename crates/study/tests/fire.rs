@@ -1,5 +1,7 @@
 //! From a netlist to verdicts, against closed forms: every true value must lie inside its bound.
 
+#![allow(clippy::unwrap_used, clippy::panic, reason = "helpers of tests")]
+
 use pulsewright_circuit::{Circuit, Dimension, LetValue};
 use pulsewright_study::outcome::{ClaimResult, SetValue};
 use pulsewright_study::{Fired, Found, Options, Progress, StudyError, Verdict, fire, judge};

@@ -11,12 +11,7 @@ impl Reader<'_> {
         let extent = self.extent(w)?;
         let part = self.part(part)?;
         let mut sum = self.products(&heat_ports(self.case.setup, part), &extent.intervals);
-        for jump in self
-            .shot()
-            .jumps
-            .iter()
-            .filter(|j| extent.intervals.iter().any(|i| i.holds(j.time)))
-        {
+        for jump in self.record.jumps_in(&extent.intervals) {
             jump.losses
                 .iter()
                 .filter(|l| l.0 == part)

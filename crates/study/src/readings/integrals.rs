@@ -23,12 +23,7 @@ impl Reader<'_> {
     /// The energy into a part through its terminals, jumps included, J.
     pub(crate) fn energy_of(&self, part: usize, window: &[Interval]) -> Sum {
         let mut sum = self.products(&ports(self.case.setup, part), window);
-        for jump in self
-            .shot()
-            .jumps
-            .iter()
-            .filter(|j| window.iter().any(|i| i.holds(j.time)))
-        {
+        for jump in self.record.jumps_in(window) {
             jump.energies
                 .iter()
                 .filter(|e| e.0 == part)
@@ -56,10 +51,8 @@ impl Reader<'_> {
 
     /// `gross charge through PART`, C.
     pub(super) fn gross_charge(&self, part: &Name, w: Option<&Window>) -> Sample {
-        Ok(Number::new(
-            self.charges(part, w)?.gross,
-            self.charges(part, w)?.gross,
-        ))
+        let sum = self.charges(part, w)?;
+        Ok(Number::new(sum.gross, sum.gross))
     }
 
     fn charges(&self, part: &Name, w: Option<&Window>) -> Result<Sum, Lack> {
@@ -68,12 +61,7 @@ impl Reader<'_> {
             return Ok(Sum::default());
         };
         let mut sum = charge(&self.record, row, &extent.intervals);
-        for jump in self
-            .shot()
-            .jumps
-            .iter()
-            .filter(|j| extent.intervals.iter().any(|i| i.holds(j.time)))
-        {
+        for jump in self.record.jumps_in(&extent.intervals) {
             sum.add(jump.impulses.get(row).copied().unwrap_or(0.0));
         }
         Ok(sum)

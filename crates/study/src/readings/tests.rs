@@ -40,11 +40,18 @@ fn read(reading: &str, edges: &[f64], forms: &[Voltage<'_>], change: impl Fn(&mu
     };
     let expr = &circuit.find_reading("x").unwrap().value;
     let probes = needs(case, [expr]).probes;
-    let rows: Vec<Box<dyn Fn(f64) -> Vec<(f64, f64)> + '_>> = forms
+    let rows: Vec<_> = forms
         .iter()
-        .map(|f| Box::new(|t| probes.iter().map(|p| of_probe(*p, f(t))).collect()) as Box<_>)
+        .map(|form| {
+            |t| {
+                probes
+                    .iter()
+                    .map(|p| of_probe(*p, form(t)))
+                    .collect::<Vec<_>>()
+            }
+        })
         .collect();
-    let rows: Vec<sample::Form<'_>> = rows.iter().map(|r| &**r as _).collect();
+    let rows: Vec<sample::Form<'_>> = rows.iter().map(|row| row as sample::Form<'_>).collect();
     let mut shot = sample::pieces(&probes, edges, 200, &rows);
     for stretch in &mut shot.stretches {
         let closed = (0.25..0.75).contains(&stretch.times[0]);

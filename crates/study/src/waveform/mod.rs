@@ -4,9 +4,10 @@
 //! read off samples: extremes, crossings and integrals are those of the cubics, so that they
 //! converge at the order of the stepping method.
 //!
-//! `cubic` holds one piece, `wave` a whole signal and how it is made of what was recorded,
+//! `cubic` holds one piece, `wave` a whole signal, `build` makes it of what was `record`ed,
 //! `extremes`, `signs`, `sums` what is read off it, `product` the energy of a part.
 
+mod build;
 mod cubic;
 mod extremes;
 mod product;

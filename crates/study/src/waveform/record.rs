@@ -9,9 +9,9 @@ use std::collections::HashMap;
 use pulsewright_circuit::Probe;
 use pulsewright_circuit::formula::{Jet, Leaves};
 use pulsewright_circuit::setup::SetEdge;
-use pulsewright_engine::{Shot, Stretch};
+use pulsewright_engine::{Jump, Shot, Stretch};
 
-use super::Cubic;
+use super::{Cubic, Interval};
 
 /// A shot with its probes indexed.
 pub struct Record<'a> {
@@ -70,6 +70,21 @@ impl<'a> Record<'a> {
         nearest
             .min_by(|a, b| (a - t).abs().total_cmp(&(b - t).abs()))
             .unwrap_or(t)
+    }
+
+    /// The jumps that lie in any of the intervals, in order of time.
+    pub fn jumps_in<'w>(
+        &self,
+        window: &'w [Interval],
+    ) -> impl Iterator<Item = &'a Jump> + use<'a, 'w> {
+        let jumps = &self.shot.jumps;
+        window.iter().flat_map(move |interval| {
+            let first = jumps.partition_point(|j| j.time < interval.start);
+            jumps
+                .iter()
+                .skip(first)
+                .take_while(|j| j.time < interval.end)
+        })
     }
 }
 

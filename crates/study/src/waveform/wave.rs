@@ -14,10 +14,10 @@ use std::borrow::Cow;
 use std::cell::OnceCell;
 
 use pulsewright_circuit::Formula;
-use pulsewright_circuit::formula::{Jet, Side};
-use pulsewright_engine::Stretch;
+use pulsewright_circuit::formula::Side;
 
-use super::record::{AtPoint, Impulses, Inside, Record, Stated};
+use super::build::{impulses, track};
+use super::record::{Record, Stated};
 use super::{Cubic, Interval};
 
 /// A signal over one stretch.
@@ -42,6 +42,7 @@ pub struct Wave<'a> {
     pub stated: f64,
     /// Its impulse at the start of each track, in its unit times s.
     pub impulses: Vec<f64>,
+    strongest: f64,
     largest: OnceCell<f64>,
 }
 
@@ -118,13 +119,13 @@ impl<'a> Wave<'a> {
             .iter()
             .map(|s| track(formula, &corners, record, s))
             .collect();
-        let impulses = (0..shot.jumps.len())
-            .map(|k| impulse(formula, record, k))
-            .collect();
+        let impulses = impulses(formula, record);
+        let strongest = impulses.iter().fold(0.0_f64, |m, s| m.max(s.abs()));
         Wave {
             tracks,
             stated,
             impulses,
+            strongest,
             largest: OnceCell::new(),
         }
     }
@@ -249,8 +250,13 @@ impl<'a> Wave<'a> {
     /// Whether it depends, somewhere in an interval, on the potential at which an island was held.
     #[must_use]
     pub fn is_floating(&self, interval: Interval) -> bool {
-        let inside = |t: &&Track<'_>| t.end() > interval.start && t.start() < interval.end;
-        self.tracks.iter().filter(inside).any(|t| t.floating)
+        let first = self.tracks.partition_point(|t| t.end() <= interval.start);
+        let inside = self
+            .tracks
+            .iter()
+            .skip(first)
+            .take_while(|t| t.start() < interval.end);
+        inside.into_iter().any(|t| t.floating)
     }
 
     /// Whether it depends on such a potential just after `t`, or just before it.
@@ -260,21 +266,22 @@ impl<'a> Wave<'a> {
     }
 
     /// Instants and strengths of the impulses in an interval; what is rounding beside the
-    /// integral of the absolute value does not count.
+    /// strongest one does not count.
+    #[must_use]
     pub fn impulses_in(&self, interval: Interval) -> Vec<(f64, f64)> {
+        if self.strongest == 0.0 {
+            return Vec::new();
+        }
+        let first = self.tracks.partition_point(|t| t.start() < interval.start);
         let starts = self
             .tracks
             .iter()
             .map(Track::start)
             .zip(self.impulses.iter().copied());
-        let mut found: Vec<_> = starts
-            .filter(|(t, s)| interval.holds(*t) && *s != 0.0)
-            .collect();
-        if !found.is_empty() {
-            let strongest = self.impulses.iter().fold(0.0_f64, |m, s| m.max(s.abs()));
-            found.retain(|(_, s)| s.abs() > 1e-12 * strongest);
-        }
-        found
+        let inside = starts.skip(first).take_while(|(t, _)| *t < interval.end);
+        inside
+            .filter(|(_, s)| s.abs() > 1e-12 * self.strongest)
+            .collect()
     }
 }
 
@@ -301,196 +308,6 @@ fn derivative(t: &[f64], s: &[f64], x: f64) -> f64 {
         value = value * (x - t) + c;
     }
     slope
-}
-
-fn impulse(formula: &Formula, record: &Record<'_>, jump: usize) -> f64 {
-    let Some(j) = record.shot.jumps.get(jump) else {
-        return 0.0;
-    };
-    if j.impulses.iter().all(|x| *x == 0.0) && j.energies.is_empty() {
-        return 0.0;
-    }
-    let rate = |counted| {
-        formula
-            .jet(
-                j.time,
-                Side::After,
-                &Impulses {
-                    record,
-                    jump,
-                    counted,
-                },
-            )
-            .rate
-    };
-    let strength = rate(true) - rate(false);
-    if strength.is_finite() { strength } else { 0.0 }
-}
-
-fn track<'a>(
-    formula: &Formula,
-    corners: &[Formula],
-    record: &Record<'a>,
-    stretch: &'a Stretch,
-) -> Track<'a> {
-    if let Formula::Probe(probe) = formula
-        && let Some(p) = record.row(*probe)
-        && let (Some(values), Some(slopes)) = (stretch.values.get(p), stretch.slopes.get(p))
-    {
-        return Track {
-            times: Cow::Borrowed(&stretch.times),
-            values: Cow::Borrowed(values),
-            slopes: Cow::Borrowed(slopes),
-            floating: stretch.floating.get(p).copied().unwrap_or(false),
-        };
-    }
-    let rows = formula.probes().into_iter().filter_map(|p| record.row(p));
-    let floating = rows
-        .into_iter()
-        .any(|p| stretch.floating.get(p).copied().unwrap_or(false));
-    let mut builder = Builder {
-        formula,
-        corners,
-        record,
-        stretch,
-        points: Vec::new(),
-    };
-    builder.build();
-    let points = builder.points;
-    Track {
-        times: points.iter().map(|p| p.0).collect(),
-        values: points.iter().map(|p| p.1).collect(),
-        slopes: points.iter().map(|p| p.2).collect(),
-        floating,
-    }
-}
-
-/// Evaluates a formula along a stretch.
-struct Builder<'r, 'a> {
-    formula: &'r Formula,
-    corners: &'r [Formula],
-    record: &'r Record<'a>,
-    stretch: &'a Stretch,
-    points: Vec<(f64, f64, f64)>,
-}
-
-impl Builder<'_, '_> {
-    fn build(&mut self) {
-        let times = &self.stretch.times;
-        let last = times.len().saturating_sub(1);
-        self.points.reserve(times.len());
-        for (n, t) in times.iter().enumerate() {
-            if n > 0 {
-                let before = self.at_point(self.formula, n, Side::Before);
-                self.push(*t, before);
-            }
-            if n < last && (n == 0 || !self.corners.is_empty()) {
-                let after = self.at_point(self.formula, n, Side::After);
-                self.push(*t, after);
-            }
-            if n < last {
-                self.split(n);
-            }
-        }
-    }
-
-    /// Adds a point; one that repeats the last is left out.
-    fn push(&mut self, t: f64, jet: Jet) {
-        let point = (t, jet.value, jet.rate);
-        if self.points.last() != Some(&point) {
-            self.points.push(point);
-        }
-    }
-
-    fn at_point(&self, formula: &Formula, point: usize, side: Side) -> Jet {
-        let t = self.stretch.times.get(point).copied().unwrap_or(f64::NAN);
-        formula.jet(
-            t,
-            side,
-            &AtPoint {
-                record: self.record,
-                stretch: self.stretch,
-                point,
-            },
-        )
-    }
-
-    fn inside(&self, formula: &Formula, step: usize, time: f64, side: Side) -> Jet {
-        formula.jet(
-            time,
-            side,
-            &Inside {
-                record: self.record,
-                stretch: self.stretch,
-                step,
-                time,
-            },
-        )
-    }
-
-    /// Adds both sides of every corner inside the step from point `n`.
-    fn split(&mut self, n: usize) {
-        let mut found: Vec<[f64; 3]> = self.corners.iter().flat_map(|c| self.zeros(c, n)).collect();
-        found.sort_by(|a, b| a[0].total_cmp(&b[0]));
-        found.dedup();
-        for [time, low, high] in found {
-            let before = self.inside(self.formula, n, low, Side::Before);
-            let after = self.inside(self.formula, n, high, Side::After);
-            self.push(time, before);
-            self.push(time, after);
-        }
-    }
-
-    /// The zeros of `corner` inside the step from point `n`, each with the neighbouring instants
-    /// between which its sign changes.
-    fn zeros(&self, corner: &Formula, n: usize) -> Vec<[f64; 3]> {
-        let (Some(t0), Some(t1)) = (self.stretch.times.get(n), self.stretch.times.get(n + 1))
-        else {
-            return Vec::new();
-        };
-        let (a, b) = (
-            self.at_point(corner, n, Side::After),
-            self.at_point(corner, n + 1, Side::Before),
-        );
-        let curve = Cubic {
-            t0: *t0,
-            t1: *t1,
-            v0: a.value,
-            v1: b.value,
-            s0: a.rate,
-            s1: b.rate,
-        };
-        let value = |t: f64| self.inside(corner, n, t, Side::After).value;
-        let positive = |t: f64| value(t) > 0.0;
-        let mut found = Vec::new();
-        let mut low = *t0;
-        for high in curve.turns().map(|(t, _)| t).chain([*t1]) {
-            if positive(low) != positive(high) {
-                let (a, b) = bisect(low, high, &positive);
-                if a > *t0 && b < *t1 {
-                    found.push([if value(a) == 0.0 { a } else { b }, a, b]);
-                }
-            }
-            low = high;
-        }
-        found
-    }
-}
-
-/// The two neighbouring numbers between which `side` changes.
-fn bisect(mut low: f64, mut high: f64, side: &impl Fn(f64) -> bool) -> (f64, f64) {
-    let at_low = side(low);
-    loop {
-        let middle = low + 0.5 * (high - low);
-        if middle <= low || middle >= high {
-            return (low, high);
-        }
-        if side(middle) == at_low {
-            low = middle;
-        } else {
-            high = middle;
-        }
-    }
 }
 
 #[cfg(test)]
