@@ -9,6 +9,8 @@
 //! Machines differ in the last bits: a bound (what stands behind `±`) may be any number, another
 //! number is compared to a part in 100,000, and how many blanks align a table does not count.
 
+#![allow(clippy::unwrap_used, reason = "a test that cannot go on panics")]
+
 use std::io::Write;
 use std::path::{Path, PathBuf};
 use std::process::{Command, Stdio};
@@ -68,24 +70,36 @@ fn words(command: &str) -> Vec<String> {
 fn parts(command: &str) -> (String, Vec<String>) {
     let all = words(command);
     match all.as_slice() {
-        [echo, text, pipe, rest @ ..] if echo == "echo" && pipe == "|" => (format!("{text}\n"), rest.to_vec()),
+        [echo, text, pipe, rest @ ..] if echo == "echo" && pipe == "|" => {
+            (format!("{text}\n"), rest.to_vec())
+        }
         _ => (String::new(), all),
     }
 }
 
 fn run(command: &str) -> Vec<String> {
-    let words = words(command);
+    let (input, words) = parts(command);
     assert_eq!(
         words.first().map(String::as_str),
         Some("pulsewright"),
         "`{command}` is no command of ours"
     );
-    let output = Command::new(env!("CARGO_BIN_EXE_pulsewright"))
+    let mut child = Command::new(env!("CARGO_BIN_EXE_pulsewright"))
         .args(&words[1..])
         .current_dir(repository())
         .env_remove("COLUMNS")
-        .output()
+        .stdin(Stdio::piped())
+        .stdout(Stdio::piped())
+        .stderr(Stdio::piped())
+        .spawn()
         .unwrap();
+    child
+        .stdin
+        .take()
+        .unwrap()
+        .write_all(input.as_bytes())
+        .unwrap();
+    let output = child.wait_with_output().unwrap();
     let text =
         String::from_utf8(output.stdout).unwrap() + &String::from_utf8(output.stderr).unwrap();
     let mut lines: Vec<String> = text.lines().map(|l| l.trim_end().to_owned()).collect();
@@ -104,8 +118,12 @@ fn run(command: &str) -> Vec<String> {
 fn fits(shown: &[String], printed: &[String]) -> bool {
     match shown.split_first() {
         None => printed.is_empty(),
-        Some((line, rest)) if line == "[…]" => (0..=printed.len()).any(|k| fits(rest, &printed[k..])),
-        Some((line, rest)) => printed.first().is_some_and(|p| same_line(line, p)) && fits(rest, &printed[1..]),
+        Some((line, rest)) if line == "[…]" => {
+            (0..=printed.len()).any(|k| fits(rest, &printed[k..]))
+        }
+        Some((line, rest)) => {
+            printed.first().is_some_and(|p| same_line(line, p)) && fits(rest, &printed[1..])
+        }
     }
 }
 
@@ -128,8 +146,14 @@ fn comparable(line: &str) -> Vec<String> {
         if rest.peek() == Some(&"×") {
             rest.nth(1);
         }
-        let is_unit = |word: &&str| word.chars().all(|c| c.is_alphabetic() || "²·/".contains(c)) && word.chars().count() <= 5;
-        if rest.peek().is_some_and(|w| is_unit(w) && !["holds", "fails"].contains(w)) {
+        let is_unit = |word: &&str| {
+            word.chars().all(|c| c.is_alphabetic() || "²·/".contains(c))
+                && word.chars().count() <= 5
+        };
+        if rest
+            .peek()
+            .is_some_and(|w| is_unit(w) && !["holds", "fails"].contains(w))
+        {
             rest.next();
         }
     }
@@ -181,7 +205,13 @@ fn dots_stand_for_any_lines() {
 
 #[test]
 fn bounds_may_differ_and_values_may_not() {
-    assert!(same_line("1  3.12345678 J  ± 30 pJ  −1 J  holds", "1  3.123456  J  ± 2.5 nJ   −1 J holds"));
-    assert!(same_line("0.25  ± 2.5 × 10⁻⁹  holds", "0.25  ± 96 × 10⁻¹⁵ holds"));
+    assert!(same_line(
+        "1  3.12345678 J  ± 30 pJ  −1 J  holds",
+        "1  3.123456  J  ± 2.5 nJ   −1 J holds"
+    ));
+    assert!(same_line(
+        "0.25  ± 2.5 × 10⁻⁹  holds",
+        "0.25  ± 96 × 10⁻¹⁵ holds"
+    ));
     assert!(!same_line("1  3.12 J  ± 30 pJ", "1  3.13 J  ± 30 pJ"));
 }
