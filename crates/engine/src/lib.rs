@@ -1,6 +1,6 @@
 //! Fires a circuit: equations, topologies, events and restarts, time stepping.
 //!
-//! [`fire`] takes a [`Setup`](pulsewright_circuit::Setup) and what is to be recorded, and
+//! [`fire`] takes a [`Setup`] and what is to be recorded, and
 //! returns a [`Shot`]. This crate knows no text, no readings, no claims: it is given instants
 //! to land on and quantities to record.
 

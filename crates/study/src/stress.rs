@@ -1,7 +1,8 @@
 //! What each part had to stand: largest voltage, current and power, energy, action.
 //!
 //! Voltage and power are at the terminals. An impulse makes what it is of unbounded: the largest
-//! value beside it is reported with an infinite bound, at the impulse's instant.
+//! value beside it is reported with an infinite bound, at the impulse's instant. A voltage that
+//! hangs on where an island was held is left out.
 
 use pulsewright_circuit::setup::Element;
 use pulsewright_circuit::{Formula, Probe, Setup};
@@ -75,8 +76,10 @@ impl Load {
             Some(Element::Changeover { .. })
         );
         if !changeover {
+            let across = Probe::VoltageAcross(part);
+            let known = grounded(reader, across);
             let voltage = self.voltage.get_or_insert_default();
-            voltage.push(reader, &probe(Probe::VoltageAcross(part)), &all, None);
+            voltage.push(reader, &probe(across), &known, None);
         }
         let current = self.current.get_or_insert_default();
         current.push(reader, &probe(Probe::CurrentThrough(part)), &all, None);
@@ -121,6 +124,28 @@ impl Load {
                 .and_then(pair),
         }
     }
+}
+
+/// The stretches in which a voltage does not hang on the potential at which an island is held;
+/// neighbours are joined, so that jumps between them count on both sides.
+fn grounded(reader: &Reader<'_>, probe: Probe) -> Vec<Interval> {
+    let shot = reader.record().shot;
+    let index = shot.probes.iter().position(|p| *p == probe);
+    let mut found: Vec<Interval> = Vec::new();
+    for stretch in &shot.stretches {
+        let floats = index
+            .and_then(|k| stretch.floating.get(k))
+            .is_some_and(|f| *f);
+        let (Some(&start), Some(&end)) = (stretch.times.first(), stretch.times.last()) else {
+            continue;
+        };
+        match found.last_mut().filter(|last| last.end == start) {
+            _ if floats => {}
+            Some(last) => last.end = end,
+            None => found.push(Interval { start, end }),
+        }
+    }
+    found
 }
 
 impl Largest {

@@ -487,3 +487,42 @@ fn the_same_input_gives_the_same_outcome() {
         assert_eq!(a.balance, b.balance);
     }
 }
+
+/// Before both poles close the bank floats at 900 V: `cold` has no voltage that means anything.
+#[test]
+fn a_voltage_that_hangs_on_an_island_is_no_stress() {
+    let text = "\
+capacitor bank from p to n = 20 uF, charged to 900 V
+switch hot  from p to pad    : open, closes at 1 ms
+switch cold from n to ground : open, closes at 1 ms
+resistor chest from pad to ground = 50 ohm
+span 5 ms
+";
+    let options = Options {
+        stress: true,
+        ..Options::default()
+    };
+    let f = fire(&circuit(text), &options).unwrap();
+    let voltage = |part: &str| {
+        let stress = f.stress.iter().find(|s| s.part == part).unwrap();
+        stress.voltage.unwrap().value
+    };
+    assert_eq!(voltage("cold"), 0.0);
+    assert!((voltage("bank") - 900.0).abs() < 1e-9);
+}
+
+/// Every crest of an undamped ring is as high as the first, which is the one meant: i = V sqrt(C/L)
+/// sin(t / sqrt(LC)), first highest after a quarter of a period.
+#[test]
+fn the_first_of_equal_crests_is_the_instant_on_any_mesh() {
+    let f = fired(
+        "capacitor c from a to ground = 1 uF, charged to 100 V\n\
+         inductor l from a to ground = 1 mH\n\
+         span 20 ms\n\
+         reading crest = time of largest current through l\n\
+         reading trough = time of lowest current through l\n",
+    );
+    let quarter = std::f64::consts::FRAC_PI_2 * f64::sqrt(1e-9);
+    check(&f, "crest", quarter, 1e-6);
+    check(&f, "trough", 3.0 * quarter, 1e-6);
+}
