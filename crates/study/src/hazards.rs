@@ -3,7 +3,7 @@
 //! A capacitor holds `v = q / C`, whatever its series resistance hides at the terminals. From when
 //! on it stays at or below 60 V is read off the shot; where it is still above at the end it is
 //! estimated from the decay there, `t + τ ln(|v| / 60 V)` with `τ = -v / v'`, and marked so; where
-//! it does not decay, it is never in sight.
+//! it does not decay, or rings and may come back, it is never in sight.
 
 use pulsewright_circuit::{Formula, Probe};
 
@@ -65,17 +65,22 @@ fn of_capacitor(plan: &Plan<'_>, record: &Record<'_>, part: usize, farads: f64) 
 /// From when on the voltage stays at or below 60 V, s, and whether that was estimated.
 fn safe_from(wave: &Wave<'_>, end: f64) -> (Option<f64>, bool) {
     let all = [Interval { start: 0.0, end }];
-    let last = |k: f64| {
-        wave.runs(&all, k, TOUCH)
-            .into_iter()
-            .rev()
-            .find(|r| r.sign > 0)
-            .map(|r| r.end)
-    };
-    let above = [last(1.0), last(-1.0)]
+    let mut runs: Vec<(f64, f64)> = [1.0, -1.0]
         .into_iter()
-        .flatten()
+        .flat_map(|k| wave.runs(&all, k, TOUCH))
+        .filter(|r| r.sign > 0)
+        .map(|r| (r.start, r.end))
+        .collect();
+    runs.sort_by(|a, b| a.0.total_cmp(&b.0));
+    let above = runs.last().map_or(0.0, |r| r.1);
+    // A ring that has come back after pauses as long as the one at the end may come back again.
+    let pause = runs
+        .windows(2)
+        .filter_map(|w| Some(w.get(1)?.0 - w.first()?.1))
         .fold(0.0, f64::max);
+    if above < end && end - above <= 1.5 * pause {
+        return (None, false);
+    }
     let (v, slope) = (wave.before(end), wave.slope_before(end));
     if v.abs() <= TOUCH || above < end {
         return (Some(above), false);

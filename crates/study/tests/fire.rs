@@ -526,3 +526,14 @@ fn the_first_of_equal_crests_is_the_instant_on_any_mesh() {
     check(&f, "crest", quarter, 1e-6);
     check(&f, "trough", 3.0 * quarter, 1e-6);
 }
+
+/// At 20 ms the ring of 0.2 ms is below 60 V, as it has been for a while in every period.
+#[test]
+fn a_ring_that_may_come_back_is_not_called_safe() {
+    let f = fired(
+        "capacitor c from a to ground = 1 uF, charged to 100 V\n\
+         inductor l from a to ground = 1 mH\n\
+         span 20 ms\n",
+    );
+    assert_eq!(f.hazards[0].at_most_60_v_from, None);
+}
