@@ -3,40 +3,23 @@
 //! Actions that are due at one instant, and what follows them at once (ganged switches, delays of
 //! 0 s), are one event: all change together, then the circuit restarts consistently, diodes
 //! included. Levels that the restart itself passes act in a further round at the same instant.
-//!
-//! A diode is looked at in three respects, the first that is not zero deciding: the impulse
-//! (a conducting one must not carry charge backwards, a blocking one must not stand a forward
-//! flux), the value, the rate of change. Diodes that fail are turned over and the restart is done
-//! again from the values before the event; where that does not settle, all combinations are tried
-//! in the order of how little they change.
+//! The restart itself, diodes found with it, is in `settle.rs`; what is written down of it in
+//! `book.rs`.
 
 use pulsewright_circuit::formula::Side;
 use pulsewright_circuit::schedule::Passing;
 
 use crate::equations::{Drive, Equations, Point};
 use crate::failure::Failure;
-use crate::network::{Law, name};
-use crate::record::{AtPoint, Reader, impulse, stored};
-use crate::restart::{Impulses, Scene, restart};
+use crate::network::Law;
+use crate::record::{AtPoint, Reader, stored};
 use crate::run::{Run, same};
 use crate::schedule::Watch;
+use crate::settle::Restart;
 use crate::shot::{Cause, Event, Jump, Notice};
-use crate::topology::Mode;
 
 /// Rounds of change at one instant before it is an error.
-const ROUNDS: usize = 100;
-/// Diodes of which all combinations are tried.
-const TRY_ALL: usize = 12;
-/// Events within a millionth of the span before it is an error.
-const CHATTER: usize = 1000;
-
-/// What a restart came to.
-struct Restart {
-    equations: Equations,
-    point: Point,
-    impulses: Impulses,
-}
-
+pub(crate) const ROUNDS: usize = 100;
 impl Run<'_> {
     /// Equalises the stated values and begins the schedules.
     pub(crate) fn start(&mut self) -> Result<(), Failure> {
@@ -93,110 +76,6 @@ impl Run<'_> {
         self.jump_rounds(None, true)
     }
 
-    /// The values just before 0 s: what is stated, and the consistent solution for the rest.
-    fn write_stated(&mut self, before: &Point, settled: &Restart) {
-        let mut p = settled.point.clone();
-        p.vc.clone_from(&before.vc);
-        p.il.clone_from(&before.il);
-        let mut values: Vec<f64> = self.readers.iter().map(|r| r.read(&p).0).collect();
-        for (value, probe) in values.iter_mut().zip(&self.request.probes) {
-            use pulsewright_circuit::Probe;
-            let (part, held) = match probe {
-                Probe::VoltageAcross(part) => (*part, false),
-                Probe::ChargeHeld(part) => (*part, true),
-                _ => continue,
-            };
-            let Some(range) = self.net.of_part.get(part) else {
-                continue;
-            };
-            let whole = held || range.len() == 1;
-            if let (true, Some(Law::Capacitance(c))) =
-                (whole, self.net.branches.get(range.start).map(|b| &b.law))
-            {
-                *value = before.vc[*c]
-                    * if held {
-                        self.net.capacitances[*c].farads
-                    } else {
-                        1.0
-                    };
-            }
-        }
-        self.shot.stated = values;
-    }
-
-    /// The equalising at 0 s: its loss has no part, since what is stated obeys no circuit.
-    fn book_start(&mut self, before: &Point, settled: &Restart, initial: &[u8]) {
-        let quiet = is_quiet(&settled.impulses);
-        let mut jump = Jump {
-            time: 0.0,
-            abrupt: !quiet,
-            ..Jump::default()
-        };
-        jump.impulses = self
-            .request
-            .probes
-            .iter()
-            .map(|p| impulse(&self.net, *p, &settled.impulses))
-            .collect();
-        let mut given = 0.0;
-        for (k, b) in self.net.branches.iter().enumerate() {
-            let energy = match b.law {
-                Law::Capacitance(c) => {
-                    0.5 * self.net.capacitances[c].farads
-                        * (settled.point.vc[c].powi(2) - before.vc[c].powi(2))
-                }
-                Law::Inductance(j) => {
-                    let flux = settled.impulses.flux_across(b.a, b.b);
-                    0.5 * (settled.point.il[j] + before.il[j]) * flux
-                }
-                Law::Voltage(s) => settled.point.sources.jets[s][0] * settled.impulses.charge[k],
-                Law::Current(s) => {
-                    settled.point.sources.jets[s][0] * settled.impulses.flux_across(b.a, b.b)
-                }
-                _ => 0.0,
-            };
-            if quiet || energy == 0.0 {
-                continue;
-            }
-            jump.energies.push((b.part, energy));
-            if matches!(b.law, Law::Voltage(_) | Law::Current(_)) {
-                given -= energy;
-                self.shot.balance.supplied[b.part] -= energy;
-            }
-        }
-        if !quiet {
-            let after = stored(&self.net, &settled.point.vc, &settled.point.il);
-            let loss = self.shot.balance.stored_start + given - after;
-            self.shot.balance.lost += loss;
-            self.shot.notices.push(Notice::Equalised { loss });
-        }
-        for (part, (was, is)) in initial.iter().zip(&self.states).enumerate() {
-            if was != is {
-                jump.events.push(self.shot.events.len());
-                self.shot.events.push(event(0.0, part, *is, false));
-            }
-        }
-        self.push_jump(jump);
-    }
-
-    /// Adds a jump; a further round at the same instant is part of the jump before it.
-    fn push_jump(&mut self, jump: Jump) {
-        let open = self.shot.jumps.len() > self.shot.stretches.len();
-        match self.shot.jumps.last_mut().filter(|_| open) {
-            Some(last) => {
-                last.impulses
-                    .iter_mut()
-                    .zip(&jump.impulses)
-                    .for_each(|(a, b)| *a += b);
-                last.energies.extend(jump.energies);
-                last.losses.extend(jump.losses);
-                last.events.extend(jump.events);
-                last.abrupt |= jump.abrupt;
-            }
-            None => self.shot.jumps.push(jump),
-        }
-    }
-
     /// Makes a restart's outcome the present state of the run.
     fn enter(&mut self, settled: Restart) {
         let Restart {
@@ -213,29 +92,6 @@ impl Run<'_> {
         self.renew_readers(&equations);
         equations.noted = true;
         self.shelf.insert(states, equations);
-    }
-
-    fn note_topology(&mut self, equations: &Equations) {
-        let time = self.point.time;
-        let parts = equations.topology.undetermined.clone();
-        let told = |n: &Notice| matches!(n, Notice::Undetermined { parts: p, .. } if *p == parts);
-        if !parts.is_empty() && !self.shot.notices.iter().any(told) {
-            self.shot.notices.push(Notice::Undetermined { parts, time });
-        }
-        let islands: Vec<usize> = equations.topology.held.clone();
-        for node in islands {
-            let nodes: Vec<String> = (0..self.setup.nodes.len())
-                .filter(|&n| equations.topology.component[n] == node)
-                .map(|n| self.setup.nodes[n].clone())
-                .collect();
-            let told = |n: &Notice| matches!(n, Notice::Island { nodes: m, .. } if *m == nodes);
-            if !nodes.is_empty()
-                && self.shot.notices.len() < 10_000
-                && !self.shot.notices.iter().any(told)
-            {
-                self.shot.notices.push(Notice::Island { nodes, time });
-            }
-        }
     }
 
     /// The jump at the present instant.
@@ -440,116 +296,6 @@ impl Run<'_> {
         Ok(())
     }
 
-    fn is_valve(&self, part: usize) -> bool {
-        self.net.of_part[part]
-            .clone()
-            .any(|b| matches!(self.net.branches[b].law, Law::Valve { .. }))
-    }
-
-    /// Voltage and current of every branch at a point of the present states.
-    fn branch_states(&self, p: &Point) -> Vec<(f64, f64)> {
-        match self.shelf.get(&self.states) {
-            Some(e) => (0..self.net.branches.len())
-                .map(|b| self.branch_state(e, b, p))
-                .collect(),
-            None => vec![(0.0, 0.0); self.net.branches.len()],
-        }
-    }
-
-    /// Books a jump's impulses: energies, losses, the log's charges and fluxes.
-    fn book(
-        &mut self,
-        jump: &mut Jump,
-        before: &[(f64, f64)],
-        settled: &Restart,
-        first_event: usize,
-    ) {
-        jump.impulses = self
-            .request
-            .probes
-            .iter()
-            .map(|p| impulse(&self.net, *p, &settled.impulses))
-            .collect();
-        if is_quiet(&settled.impulses) {
-            return;
-        }
-        let stored_before = stored(&self.net, &self.point.vc, &self.point.il);
-        for (k, b) in self.net.branches.iter().enumerate() {
-            let (v, i) = self.branch_state(&settled.equations, k, &settled.point);
-            let flux = settled.impulses.flux_across(b.a, b.b);
-            let energy = 0.5 * (before[k].0 + v) * settled.impulses.charge[k]
-                + 0.5 * (before[k].1 + i) * flux;
-            if energy == 0.0 {
-                continue;
-            }
-            jump.energies.push((b.part, energy));
-            match b.law {
-                Law::Voltage(_) | Law::Current(_) => self.shot.balance.supplied[b.part] -= energy,
-                Law::Contact { .. } | Law::Valve { .. } | Law::Short | Law::Resistance(_) => {
-                    jump.losses.push((b.part, energy));
-                    self.shot.balance.lost += energy;
-                }
-                _ => {}
-            }
-        }
-        let losses = jump.losses.clone();
-        for e in self.shot.events.iter_mut().skip(first_event) {
-            e.charge = self
-                .net
-                .terminal(e.part)
-                .into_iter()
-                .map(|(k, s)| s * settled.impulses.charge[k])
-                .sum();
-            e.flux = self.net.of_part[e.part]
-                .clone()
-                .map(|k| {
-                    settled
-                        .impulses
-                        .flux_across(self.net.branches[k].a, self.net.branches[k].b)
-                })
-                .fold(0.0, |a: f64, b| if b.abs() > a.abs() { b } else { a });
-            e.loss = losses
-                .iter()
-                .filter(|(p, _)| *p == e.part)
-                .map(|l| l.1)
-                .sum();
-        }
-        for &(part, loss) in &losses {
-            if loss > 1e-6 * stored_before {
-                self.shot.notices.push(Notice::LossAtEvent {
-                    part,
-                    time: jump.time,
-                    loss,
-                });
-            }
-        }
-    }
-
-    fn limit_events(&mut self, first: usize, time: f64) -> Result<(), Failure> {
-        let new = self.shot.events.len() - first;
-        self.recent.extend(std::iter::repeat_n(time, new));
-        let within = 1e-6 * self.setup.span;
-        while self.recent.front().is_some_and(|t| *t < time - within) {
-            self.recent.pop_front();
-        }
-        if self.recent.len() > CHATTER {
-            return Err(Failure::Chatter {
-                names: self.latest(),
-                time,
-                count: self.recent.len() as u64,
-                within,
-            });
-        }
-        if self.shot.events.len() as u64 > self.setup.limits.events {
-            return Err(Failure::Limit {
-                limit: "events",
-                allowed: self.setup.limits.events,
-                time,
-            });
-        }
-        self.ask(time)
-    }
-
     /// For each level watch, whether its level was past at a point of earlier states.
     fn levels_before(&self, p: &Point, states: &[u8]) -> Vec<Vec<bool>> {
         let Some(e) = self.shelf.get(states) else {
@@ -641,225 +387,10 @@ impl Run<'_> {
             }
         }
     }
-
-    /// Restarts from `before` in the present states of switches, finding those of the diodes.
-    fn settle(
-        &mut self,
-        before: &Point,
-        drive: &Drive,
-        time: f64,
-        forced: &[usize],
-    ) -> Result<Restart, Failure> {
-        let valves: Vec<usize> = (0..self.states.len())
-            .filter(|&p| self.is_valve(p))
-            .collect();
-        let mut tried: Vec<Vec<u8>> = Vec::new();
-        let mut trouble = None;
-        for round in 0..ROUNDS {
-            let states = self.states.clone();
-            match self.attempt(&states, before, drive, time) {
-                Ok(settled) => {
-                    let fresh = if round == 0 { forced } else { &[] };
-                    let wrong = self.wrong(&settled, &valves, fresh);
-                    if wrong.is_empty() {
-                        return Ok(settled);
-                    }
-                    self.shelf.insert(states.clone(), settled.equations);
-                    let seen = tried.contains(&states);
-                    tried.push(states);
-                    if seen && round > 8 {
-                        break;
-                    }
-                    // All that fail at first, then the first alone (least index), which settles
-                    // where turning all over would circle.
-                    let turn = if round < 4 {
-                        wrong.as_slice()
-                    } else {
-                        &wrong[..1]
-                    };
-                    for &p in turn {
-                        self.states[p] = 1 - self.states[p].min(1);
-                    }
-                }
-                Err(f) => {
-                    trouble = Some(f);
-                    break;
-                }
-            }
-        }
-        self.settle_by_trying(before, drive, time, &valves, trouble)
-    }
-
-    fn settle_by_trying(
-        &mut self,
-        before: &Point,
-        drive: &Drive,
-        time: f64,
-        valves: &[usize],
-        trouble: Option<Failure>,
-    ) -> Result<Restart, Failure> {
-        let names = || {
-            valves
-                .iter()
-                .take(8)
-                .map(|&p| name(self.setup, p))
-                .collect()
-        };
-        let none = trouble.unwrap_or_else(|| Failure::NoState {
-            names: names(),
-            time,
-        });
-        if valves.is_empty() || valves.len() > TRY_ALL {
-            return Err(none);
-        }
-        let start = self.states.clone();
-        let mut masks: Vec<u32> = (0..1_u32 << valves.len()).collect();
-        masks.sort_by_key(|m| m.count_ones());
-        for mask in masks {
-            let mut states = start.clone();
-            for (i, &p) in valves.iter().enumerate() {
-                if mask >> i & 1 == 1 {
-                    states[p] = 1 - states[p].min(1);
-                }
-            }
-            self.states.clone_from(&states);
-            let Ok(settled) = self.attempt(&states, before, drive, time) else {
-                continue;
-            };
-            if self.wrong(&settled, valves, &[]).is_empty() {
-                return Ok(settled);
-            }
-            self.shelf.insert(states, settled.equations);
-        }
-        self.states = start;
-        Err(none)
-    }
-
-    /// One restart in given states.
-    fn attempt(
-        &mut self,
-        states: &[u8],
-        before: &Point,
-        drive: &Drive,
-        time: f64,
-    ) -> Result<Restart, Failure> {
-        let mut equations = self.take_equations(states, time)?;
-        for (i, node) in equations.topology.held.clone().into_iter().enumerate() {
-            equations.held[i] = crate::equations::potential(node)
-                .and_then(|k| before.y.get(k))
-                .copied()
-                .unwrap_or(0.0);
-        }
-        let mut point = before.clone();
-        point.time = time;
-        point.sources = drive.clone();
-        let scene = Scene {
-            net: &self.net,
-            setup: self.setup,
-            equations: &equations,
-            drive,
-            small: self.small(),
-            time,
-        };
-        let outcome = restart(scene, &mut point.vc, &mut point.il);
-        let solved = outcome.and_then(|impulses| {
-            equations.solve(&self.net, self.setup, 0.0, &mut point)?;
-            equations.slopes(&self.net, self.setup, &mut point)?;
-            if point.y.iter().chain(&point.dy).all(|v| v.is_finite()) {
-                Ok(impulses)
-            } else {
-                let bad = drive
-                    .jets
-                    .iter()
-                    .position(|j| !j.iter().all(|x| x.is_finite()));
-                let what = bad.map_or_else(
-                    || "a voltage or a current".to_owned(),
-                    |s| {
-                        format!(
-                            "the value of `{}`",
-                            name(
-                                self.setup,
-                                self.net.branches[self.net.sources[s].branch].part
-                            )
-                        )
-                    },
-                );
-                Err(Failure::NotFinite { what, time })
-            }
-        });
-        match solved {
-            Ok(impulses) => Ok(Restart {
-                equations,
-                point,
-                impulses,
-            }),
-            Err(f) => {
-                self.shelf.insert(states.to_vec(), equations);
-                Err(f)
-            }
-        }
-    }
-
-    /// The diodes whose state contradicts a restart; those in `fresh` were just turned over by
-    /// their own condition and stay unless a value says otherwise beyond rounding.
-    fn wrong(&self, settled: &Restart, valves: &[usize], fresh: &[usize]) -> Vec<usize> {
-        let p = &settled.point;
-        let (volts, amperes) = (1e-9 * self.volts, 1e-9 * self.amperes);
-        let n = self.net.nodes - 1;
-        let most = |v: &[f64]| v.iter().fold(0.0_f64, |a, x| a.max(x.abs()));
-        let (fast_volts, fast_amperes) = (
-            1e-9 * most(&p.dy[..n]),
-            1e-9 * most(&p.dy[n..]).max(most(&p.dil)),
-        );
-        let mut wrong = Vec::new();
-        for &part in valves {
-            for k in self.net.of_part[part].clone() {
-                let b = &self.net.branches[k];
-                let Law::Valve { threshold, .. } = b.law else {
-                    continue;
-                };
-                let conducts = matches!(
-                    settled.equations.topology.modes[k],
-                    Mode::Tie { .. } | Mode::Resistive { .. }
-                );
-                let (v, i) = self.branch_state(&settled.equations, k, p);
-                let rate = crate::equations::volts(&p.dy, b.a, b.b);
-                let bad = if conducts {
-                    let form = crate::equations::current_form(
-                        &self.net,
-                        &settled.equations.topology.modes,
-                        k,
-                    );
-                    let slope = form.rate(p);
-                    let charge = settled.impulses.charge[k];
-                    charge < 0.0
-                        || (charge == 0.0
-                            && (i < -amperes
-                                || (i <= amperes
-                                    && slope < -fast_amperes
-                                    && !fresh.contains(&part))))
-                } else {
-                    let flux = settled.impulses.flux_across(b.a, b.b);
-                    let over = v - threshold;
-                    flux > 0.0
-                        || (flux == 0.0
-                            && (over > volts
-                                || (over >= -volts && rate > fast_volts && !fresh.contains(&part))))
-                };
-                if bad {
-                    wrong.push(part);
-                }
-            }
-        }
-        wrong
-    }
 }
 
-fn is_quiet(i: &Impulses) -> bool {
-    i.flux.is_empty() && i.charge.iter().all(|q| *q == 0.0)
-}
-
-fn event(time: f64, part: usize, state: u8, found: bool) -> Event {
+/// A line of the event log, without an impulse yet.
+pub(crate) fn event(time: f64, part: usize, state: u8, found: bool) -> Event {
     Event {
         time,
         part,

@@ -4,8 +4,10 @@
 //! returns a [`Shot`]. This crate knows no text, no readings, no claims: it is given instants
 //! to land on and quantities to record.
 
+mod book;
 pub mod equations;
 pub mod failure;
+pub mod forms;
 mod jump;
 pub mod linear;
 mod march;
@@ -16,6 +18,7 @@ pub mod record;
 pub mod restart;
 pub mod run;
 pub mod schedule;
+mod settle;
 pub mod shot;
 mod steady;
 pub mod step;

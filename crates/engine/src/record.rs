@@ -3,7 +3,8 @@
 use pulsewright_circuit::formula::{Jet, Leaves, Probe};
 use pulsewright_circuit::setup::{Element, Ohms, SetEdge, Setup};
 
-use crate::equations::{Form, Point, probe_form, voltage_form};
+use crate::equations::Point;
+use crate::forms::{Form, probe_form};
 use crate::network::{Law, Network};
 use crate::restart::Impulses;
 use crate::shot::Event;
@@ -233,10 +234,4 @@ pub fn stored(net: &Network, vc: &[f64], il: &[f64]) -> f64 {
         .map(|(l, i)| 0.5 * i * l.henrys.iter().map(|&(k, h)| h * il[k]).sum::<f64>())
         .sum();
     caps + coils
-}
-
-/// A node's voltage as a form; used for landing messages and tests.
-#[must_use]
-pub fn node_form(node: usize) -> Form {
-    voltage_form(node, 0)
 }

@@ -134,7 +134,7 @@ fn law_row(
             };
             let mut value = drive.jets[s][0];
             for (probe, factor) in &net.sources[s].terms {
-                let Some(form) = crate::equations::probe_form(net, modes, *probe) else {
+                let Some(form) = crate::forms::probe_form(net, modes, *probe) else {
                     return Err(Failure::NotYet(
                         "a steady start with this controlled source".to_owned(),
                     ));
