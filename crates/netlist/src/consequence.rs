@@ -155,13 +155,12 @@ fn has_ends(document: &Document, statement: &Statement) -> bool {
         .iter()
         .take_while(|t| !matches!(t.kind, Kind::Equal | Kind::Colon))
         .map(|t| t.text(&document.text));
-    let coupling = document.word(statement, 0) == "coupling";
-    let (first, second) = if coupling {
-        ("between", "and")
-    } else {
-        ("from", "to")
+    let joints: &[&str] = match document.word(statement, 0) {
+        "coupling" => &["between", "and"],
+        "changeover" => &["from", "to", "or"],
+        _ => &["from", "to"],
     };
-    head.any(|w| w == first) && head.any(|w| w == second) && head.next().is_some()
+    joints.iter().all(|joint| head.any(|w| w == *joint)) && head.next().is_some()
 }
 
 /// Adds what is defined by means of uncertain names, until nothing is added.

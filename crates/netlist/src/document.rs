@@ -83,7 +83,7 @@ impl Document {
         within.into_iter().any(|s| leaves_doubt(&s.what))
     }
 
-    /// Whether any mistake stands in a statement.
+    /// Whether any mistake stands in a statement; that a block has no `end` is none of its head.
     pub(crate) fn is_slipped(&self, statement: &Statement) -> bool {
         let tokens = self.tokens_of(statement);
         let (Some(first), Some(last)) = (tokens.first(), tokens.last()) else {
@@ -91,8 +91,10 @@ impl Document {
         };
         let from = self.slips.partition_point(|s| s.span.start < first.start);
         self.slips
-            .get(from)
-            .is_some_and(|s| s.span.start <= last.end)
+            .iter()
+            .skip(from)
+            .take_while(|s| s.span.start <= last.end)
+            .any(|s| !matches!(s.what, What::NoEnd { .. }))
     }
 }
 

@@ -20,7 +20,7 @@ use crate::grammar::{Made, RepeatHead, read, repeat_head};
 use crate::scope::{Lets, Scope};
 use crate::slip::{Slip, What};
 use crate::tree::{Block, Item, Statement};
-use crate::words::is_reserved;
+use crate::words::{OUTSIDE_REPEAT, is_reserved};
 
 /// What lowering yields.
 pub(crate) struct Lowered {
@@ -257,20 +257,7 @@ impl<'a> Pass<'a, '_> {
 
     fn form_of(&mut self, statement: &Statement) {
         let word = self.document.word(statement, 0);
-        let elsewhere = matches!(
-            word,
-            "title"
-                | "note"
-                | "let"
-                | "cases"
-                | "span"
-                | "start"
-                | "integrate"
-                | "error"
-                | "time"
-                | "limit"
-        );
-        if elsewhere {
+        if OUTSIDE_REPEAT.contains(&word) {
             let what = What::NotInRepeat {
                 word: word.to_owned(),
             };

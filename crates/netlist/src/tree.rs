@@ -13,7 +13,7 @@
 
 use crate::slip::{Slip, What};
 use crate::token::{Gap, Kind, Token};
-use crate::words::{PARTS, is_connective};
+use crate::words::{OUTSIDE_REPEAT, PARTS, is_connective};
 
 /// A statement: a range of the file's tokens, never empty.
 #[derive(Clone, Debug)]
@@ -97,7 +97,8 @@ pub(crate) fn blocks(
         let into = open.last_mut().map_or(&mut top, |b| &mut b.body);
         into.push(Item::One(statement));
     }
-    while let Some(block) = open.pop() {
+    let lines = Lines { text, tokens };
+    while let Some(mut block) = open.pop() {
         if let Some(token) = tokens.get(block.head.first) {
             slips.push(Slip::new(
                 token.span(),
@@ -106,8 +107,12 @@ pub(crate) fn blocks(
                 },
             ));
         }
+        let outside = |item: &Item| matches!(item, Item::One(s) if lines.ends_repeat(s));
+        let past = block.body.iter().position(outside);
+        let rest = block.body.split_off(past.unwrap_or(block.body.len()));
         let into = open.last_mut().map_or(&mut top, |b| &mut b.body);
         into.push(Item::Block(block));
+        into.extend(rest);
     }
     (top, slips)
 }
@@ -118,6 +123,18 @@ struct Lines<'a> {
 }
 
 impl Lines<'_> {
+    /// Whether a `repeat` without `end` is read as closed before this statement: one that may
+    /// not stand in a `repeat`, or would give one name in every round.
+    fn ends_repeat(&self, statement: &Statement) -> bool {
+        let Some(token) = self.tokens.get(statement.first) else {
+            return false;
+        };
+        let word = token.text(self.text);
+        let names = PARTS.contains(&word) || matches!(word, "signal" | "reading" | "claim");
+        let indexed = self.kind(statement.first + 2) == Some(Kind::OpenIndex);
+        OUTSIDE_REPEAT.contains(&word) || (names && !indexed)
+    }
+
     fn statement(&self, first: usize) -> Statement {
         let mut brackets: Vec<usize> = Vec::new();
         let mut last = first;

@@ -68,6 +68,20 @@ pub(crate) const STATEMENTS: &[&str] = &[
     "end",
 ];
 
+/// First words of the statements that may not stand in a `repeat`.
+pub(crate) const OUTSIDE_REPEAT: &[&str] = &[
+    "title",
+    "note",
+    "let",
+    "cases",
+    "span",
+    "start",
+    "integrate",
+    "error",
+    "time",
+    "limit",
+];
+
 /// First words of statements that come later, with what they are.
 pub(crate) const LATER: &[(&str, &str)] = &[
     ("transformer", "`transformer`, the ideal transformer,"),

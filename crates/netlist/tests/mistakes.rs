@@ -275,3 +275,136 @@ fn a_setting_is_placed_in_its_own_text() {
     assert_eq!(parse_value("bank").unwrap_err().code, "P0255");
     assert_eq!(parse_value("").unwrap_err().code, "P0303");
 }
+
+/// What is written as the line of a netlist without another mistake: the mistakes of it, each as
+/// its column and the word offered.
+fn offers(line: &str) -> Vec<(usize, Option<String>)> {
+    let text = format!(
+        "{line}\nresistor r from d to ground = 5 ohm\nswitch sw from d to ground : open, closes at 1 us\nspan 1 ms\n"
+    );
+    all(&text)
+        .list()
+        .iter()
+        .map(|m| (if m.line == 1 { m.column } else { 0 }, m.write.clone()))
+        .collect()
+}
+
+fn offered(line: &str, column: usize, word: &str) {
+    assert_eq!(offers(line), [(column, Some(word.to_owned()))], "{line}");
+}
+
+#[test]
+fn a_misspelt_ordinal_is_placed_and_the_near_one_offered() {
+    offered("reading c = frist closing of sw", 13, "first");
+    offered("reading c = lst closing of sw", 13, "last");
+    offered(
+        "switch u from d to ground : open, closes 1 us after secnd closing of sw",
+        53,
+        "second",
+    );
+    offered(
+        "reading c = energy into r after frist closing of sw",
+        33,
+        "first",
+    );
+}
+
+#[test]
+fn a_word_before_a_change_that_is_near_no_ordinal_is_the_mistake() {
+    assert_eq!(offers("reading c = zorkmid closing of sw"), [(13, None)]);
+}
+
+#[test]
+fn a_misspelt_function_is_placed_and_the_near_one_offered() {
+    offered(
+        "voltage k from d to ground = 5 V * sine(t / 1 s)",
+        36,
+        "sin",
+    );
+    offered("let x = 5 V + 1 V * sqr(4)", 21, "sqrt");
+    offered("let x = expp(4)", 9, "exp");
+    offered(
+        "voltage k from d to ground = 5 V * stp(t - 1 us)",
+        36,
+        "step",
+    );
+    offered("reading c = highest sqr(4)", 21, "sqrt");
+}
+
+#[test]
+fn misspelt_points_are_placed_and_offered() {
+    offered(
+        "voltage k from d to ground = pionts(t; 0 s: 0 V; 1 s: 5 V)",
+        30,
+        "points",
+    );
+}
+
+#[test]
+fn a_misspelt_window_is_placed_and_the_near_word_offered() {
+    offered(
+        "reading c = energy into r betwen 1 us and 2 us",
+        27,
+        "between",
+    );
+    offered("reading c = energy into r aftr 1 us", 27, "after");
+    offered("reading c = energy into r befor 1 us", 27, "before");
+    offered(
+        "reading c = mean voltage across r durng phase 1 of voltage across r",
+        35,
+        "during",
+    );
+}
+
+#[test]
+fn a_misspelt_before_is_placed_after_just() {
+    offered("reading c = voltage across r just befor 1 us", 35, "before");
+}
+
+#[test]
+fn a_misspelt_clause_of_a_claim_is_offered_with_its_comma() {
+    offered(
+        "claim c: energy into r is at most 5 J allwing 1 J",
+        39,
+        ", allowing",
+    );
+}
+
+#[test]
+fn a_through_written_short_is_offered_in_full() {
+    offered("reading c = charge thru r", 20, "through");
+    offered("reading c = gross charge thru r", 26, "through");
+}
+
+#[test]
+fn a_misspelt_current_is_placed_after_zero() {
+    offered(
+        "switch u from d to ground : open, closes at zero curent",
+        50,
+        "current",
+    );
+}
+
+#[test]
+fn a_coupling_that_could_not_be_read_names_no_parts() {
+    offered("coupling k betwen a and b = 0.5", 12, "between");
+}
+
+#[test]
+fn a_changeover_that_could_not_be_read_joins_no_nodes() {
+    let found = offers("changeover k from a to b and ground : at b");
+    assert_eq!(found, [(26, None)]);
+}
+
+#[test]
+fn a_repeat_without_end_is_closed_before_what_may_not_stand_in_it() {
+    let text = "repeat k from 1 to 2\n  resistor r[k] from a to ground = 5 ohm\nspan 1 ms\n";
+    assert_eq!(places(text), [(1, 1)]);
+}
+
+#[test]
+fn a_repeat_without_end_is_closed_before_a_name_without_an_index() {
+    let text = "repeat k from 1 to 2\n  resistor r[k] from a to ground = 5 ohm\n\
+        capacitor c from a to ground = 1 uF\nspan 1 ms\n";
+    assert_eq!(places(text), [(1, 1)]);
+}

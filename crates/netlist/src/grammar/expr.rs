@@ -146,6 +146,9 @@ impl Parser<'_> {
             return Ok(primary);
         }
         let just_before = self.are_words(&["just", "before"]);
+        if !just_before && self.take_words(&["just"]) {
+            return self.expected("`before`", &["before"]);
+        }
         if !just_before && (!self.is_word(0, "at") || self.begins_relation()) {
             return Ok(primary);
         }
@@ -253,6 +256,9 @@ impl Parser<'_> {
         if let Some(slip) = self.unit_alone() {
             return Err(slip);
         }
+        if self.kind(1) == Some(Kind::Open) {
+            return self.unknown_function();
+        }
         let name = self.indexed()?;
         let kind = match self.scope.counter(&name.text) {
             #[allow(
@@ -267,6 +273,13 @@ impl Parser<'_> {
             None => ExprKind::Name(name.text),
         };
         Ok(Expr::new(kind, name.span).into())
+    }
+
+    /// A name before a bracket, which is no function.
+    fn unknown_function(&self) -> Read<Deep> {
+        let functions: Vec<&str> = Function::ALL.iter().map(|(name, _)| *name).collect();
+        let words: Vec<&str> = functions.into_iter().chain(["points"]).collect();
+        self.expected("a function before `(`", &words)
     }
 
     fn call(&mut self, name: &'static str, function: Function) -> Read<Deep> {

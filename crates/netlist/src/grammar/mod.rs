@@ -31,6 +31,7 @@ pub(crate) use whole::{RepeatHead, repeat_head};
 
 use pulsewright_circuit::{Dimension, Expr, ExprKind, Span};
 
+use self::phrase::meant;
 use crate::scope::Scope;
 use crate::slip::{Slip, What};
 use crate::token::{Kind, Token};
@@ -42,6 +43,14 @@ pub(crate) type Read<T> = Result<T, Box<Slip>>;
 
 /// The most operations that an expression may hold one within or after the other.
 const MOST_DEPTH: usize = 400;
+
+/// Words that a value or a phrase may go on with.
+const FURTHER: &[&str] = &[
+    "between", "after", "before", "while", "during", "at", "just", "with", "or",
+];
+
+/// Words that begin a clause or a spread, after a comma.
+const AFTER_COMMA: &[&str] = &["answers", "when", "allowing", "tolerance", "standard"];
 
 /// What a sign is for the printer.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -206,7 +215,7 @@ impl<'a> Parser<'a> {
         }
         let near = self
             .word(0)
-            .and_then(|w| nearest(w, words.iter().copied()))
+            .and_then(|w| meant(w, words.iter().copied()))
             .map(str::to_owned);
         if let Some(slip) = self.misspelt_phrase().filter(|_| near.is_none()) {
             return Err(slip);
@@ -348,7 +357,28 @@ impl<'a> Parser<'a> {
         match self.kind(0) {
             Some(Kind::Close) => self.slip(self.place(), What::BracketAlone { bracket: ")" }),
             Some(Kind::CloseIndex) => self.slip(self.place(), What::BracketAlone { bracket: "]" }),
-            _ => self.expected(expected, &[]),
+            _ if self.unit_alone().is_some() => self.expected(expected, &[]),
+            _ => {
+                if let Some(slip) = self.misspelt_phrase() {
+                    return Err(slip);
+                }
+                let near = |words: &[&'static str]| {
+                    let word = self.word(0)?;
+                    nearest(word, words.iter().copied())
+                };
+                let (expected, near) = match (near(FURTHER), near(AFTER_COMMA)) {
+                    (Some(near), _) => (format!("`{near}` or {expected}"), Some(near.to_owned())),
+                    (None, near) => (expected.to_owned(), near.map(|n| format!(", {n}"))),
+                };
+                let (within, found) = (self.subject(), self.found());
+                let what = What::Expected {
+                    within,
+                    expected,
+                    found,
+                    near,
+                };
+                self.slip(self.place(), what)
+            }
         }
     }
 }

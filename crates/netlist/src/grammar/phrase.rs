@@ -8,8 +8,11 @@ use pulsewright_circuit::Span;
 use pulsewright_circuit::near::nearest;
 
 use super::Parser;
+use super::edge::ORDINAL;
 use super::reading::BEGINNINGS;
 use crate::slip::{Slip, What};
+use crate::token::{Kind, Token};
+use crate::words::ORDINALS;
 
 /// First and second words of the phrases that are no readings.
 const OTHERS: &[(&str, &[&str])] = &[
@@ -28,16 +31,27 @@ const OTHERS: &[(&str, &[&str])] = &[
     ("short", &["circuit"]),
 ];
 
+/// The word that was probably meant; `thru` is too far from `through` by its letters.
+pub(super) fn meant<'a>(
+    word: &str,
+    mut words: impl Iterator<Item = &'a str> + Clone,
+) -> Option<&'a str> {
+    nearest(word, words.clone()).or_else(|| words.find(|w| word == "thru" && *w == "through"))
+}
+
 impl Parser<'_> {
     /// The mistake of the word here, or of the one before it, that is near a phrase's word.
     pub(super) fn misspelt_phrase(&self) -> Option<Box<Slip>> {
         let before = self.at.checked_sub(1).and_then(|i| self.tokens.get(i))?;
         let (first, second) = (before.text(self.text), self.word(0)?);
+        if let Some(slip) = self.misspelt_ordinal(before) {
+            return Some(slip);
+        }
         let all = || BEGINNINGS.iter().chain(OTHERS);
         let seconds = all()
             .filter(|(f, _)| *f == first)
             .flat_map(|(_, s)| s.iter().copied());
-        if let Some(meant) = nearest(second, seconds) {
+        if let Some(meant) = meant(second, seconds) {
             let expected = format!("`{meant}` after `{first}`");
             return Some(self.misspelt(self.place(), expected, second, meant));
         }
@@ -47,6 +61,27 @@ impl Parser<'_> {
             .map(|(f, _)| *f);
         let meant = nearest(first, firsts.chain(alone))?;
         Some(self.misspelt(before.span(), format!("`{meant}`"), first, meant))
+    }
+
+    /// A word before `closing of` or its like that is near an ordinal, or follows `=`.
+    fn misspelt_ordinal(&self, before: &Token) -> Option<Box<Slip>> {
+        let found = before.text(self.text);
+        if before.kind != Kind::Word || ORDINALS.contains(&found) || !self.is_change(0) {
+            return None;
+        }
+        let near = nearest(found, ORDINALS.iter().copied());
+        let alone = self.at.checked_sub(2).and_then(|i| self.tokens.get(i));
+        if near.is_none() && alone.is_none_or(|t| t.kind != Kind::Equal) {
+            return None;
+        }
+        let (within, expected) = (self.subject(), ORDINAL.to_owned());
+        let what = What::Expected {
+            within,
+            expected: near.map_or(expected, |n| format!("`{n}`")),
+            found: format!("`{found}`"),
+            near: near.map(str::to_owned),
+        };
+        Some(Box::new(Slip::new(before.span(), what)))
     }
 
     fn misspelt(&self, place: Span, expected: String, found: &str, meant: &str) -> Box<Slip> {

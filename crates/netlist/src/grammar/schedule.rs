@@ -9,6 +9,7 @@
 //!
 //! A spread may follow a trigger after a comma, and belongs to its instant, level or delay.
 
+use pulsewright_circuit::near::nearest;
 use pulsewright_circuit::schedule::{Action, Change, Passing, Trigger, TriggerKind};
 use pulsewright_circuit::spread::Value;
 
@@ -55,6 +56,10 @@ impl Parser<'_> {
             Some("at") if self.is_word(1, "zero") && self.is_word(2, "current") => {
                 self.zero_current()?
             }
+            Some("at") if self.is_word(1, "zero") && self.is_near(2, "current") => {
+                self.at += 2;
+                return self.expected("`current`", &["current"]);
+            }
             Some("at") => {
                 self.at += 1;
                 TriggerKind::At(self.value()?)
@@ -69,6 +74,11 @@ impl Parser<'_> {
             kind,
             span: self.since(from),
         })
+    }
+
+    fn is_near(&self, ahead: usize, word: &str) -> bool {
+        self.word(ahead)
+            .is_some_and(|w| nearest(w, [word]).is_some())
     }
 
     fn zero_current(&mut self) -> Read<TriggerKind> {

@@ -39,7 +39,8 @@ impl Parser<'_> {
             Some(Kind::Word) if !self.begins_reading() => match self.named() {
                 Ok(value) => Ok(value),
                 Err(slip)
-                    if matches!(slip.what, What::Expected { .. }) && slip.span == self.place() =>
+                    if matches!(slip.what, What::Expected { near: None, .. })
+                        && slip.span == self.place() =>
                 {
                     self.expected(what, &[])
                 }

@@ -18,8 +18,9 @@ impl Parser<'_> {
     pub(super) fn changeover(&mut self) -> PartKind {
         let read = self.three_ends();
         let ends = self.or_give_up(read);
+        let unread = Name::new("ground", self.whole_span());
         let (common, first, second) =
-            ends.unwrap_or_else(|| ("ground".into(), "ground".into(), "ground".into()));
+            ends.unwrap_or_else(|| (unread.clone(), unread.clone(), unread));
         let mut q = Qualifiers::default();
         let mut start = first.clone();
         if !self.is_end() || self.slips.is_empty() {

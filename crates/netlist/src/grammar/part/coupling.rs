@@ -16,9 +16,10 @@ const FORM: Form = Form {
 impl Parser<'_> {
     pub(super) fn coupling(&mut self) -> PartKind {
         let read = self.windings();
+        let unread = Name::new("", self.whole_span());
         let (first, second) = self
             .or_give_up(read)
-            .unwrap_or_else(|| ("".into(), "".into()));
+            .unwrap_or_else(|| (unread.clone(), unread));
         let mut factor = self.main_value();
         self.qualifiers(&FORM, &mut factor);
         PartKind::Coupling(Coupling {

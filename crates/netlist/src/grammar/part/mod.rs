@@ -87,8 +87,9 @@ impl Parser<'_> {
     /// `from NODE to NODE`; where that is amiss the rest of the statement is passed over.
     fn ends(&mut self) -> (Name, Name) {
         let read = self.try_ends();
+        let unread = Name::new("ground", self.whole_span());
         self.or_give_up(read)
-            .unwrap_or_else(|| ("ground".into(), "ground".into()))
+            .unwrap_or_else(|| (unread.clone(), unread))
     }
 
     fn try_ends(&mut self) -> Read<(Name, Name)> {
