@@ -251,6 +251,7 @@ impl Run<'_> {
     }
 }
 
-fn is_quiet(i: &Impulses) -> bool {
+/// Whether no impulse flowed.
+pub(crate) fn is_quiet(i: &Impulses) -> bool {
     i.flux.is_empty() && i.charge.iter().all(|q| *q == 0.0)
 }

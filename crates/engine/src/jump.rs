@@ -9,6 +9,7 @@
 use pulsewright_circuit::formula::Side;
 use pulsewright_circuit::schedule::Passing;
 
+use crate::book::is_quiet;
 use crate::equations::{Drive, Equations, Point};
 use crate::failure::Failure;
 use crate::network::Law;
@@ -107,6 +108,9 @@ impl Run<'_> {
         let corner = !start && self.corners.get(near).is_some_and(|c| same(*c, time));
         let mut cause = cause;
         let mut written = start;
+        if start && self.shot.jumps.last().is_some_and(|j| j.abrupt) {
+            self.turn_over(time)?;
+        }
         for round in 0..ROUNDS {
             let (changed, found) = self.due(cause.take(), time);
             let restart_needed = !changed.is_empty() || (corner && round == 0);
@@ -126,7 +130,9 @@ impl Run<'_> {
                 written = true;
                 continue;
             }
-            self.change(&changed, &found, time)?;
+            if self.change(&changed, &found, time)? {
+                self.turn_over(time)?;
+            }
             written = true;
         }
         Err(Failure::Chatter {
@@ -243,13 +249,13 @@ impl Run<'_> {
         self.shot.notices = notices;
     }
 
-    /// Changes parts at an instant and restarts.
+    /// Changes parts at an instant and restarts; returns whether impulses flowed.
     fn change(
         &mut self,
         changed: &[(usize, u8)],
         found: &[usize],
         time: f64,
-    ) -> Result<(), Failure> {
+    ) -> Result<bool, Failure> {
         let before = self.point.clone();
         let states_before = self.states.clone();
         let branches = self.branch_states(&before);
@@ -264,6 +270,7 @@ impl Run<'_> {
         let mut drive = before.sources.clone();
         drive.at(&self.net, time, Side::After);
         let settled = self.settle(&before, &drive, time, &forced)?;
+        let impulsive = !is_quiet(&settled.impulses);
         let first_event = self.shot.events.len();
         let mut jump = Jump {
             time,
@@ -293,7 +300,28 @@ impl Run<'_> {
         self.limit_events(first_event, time)?;
         self.resolve(&[], time);
         self.watch_afresh(Some(&watched));
-        Ok(())
+        Ok(impulsive)
+    }
+
+    /// Turns diodes over, at the same instant, that what an impulse left behind contradicts.
+    fn turn_over(&mut self, time: f64) -> Result<(), Failure> {
+        for _ in 0..ROUNDS {
+            let parts = self.contradicted_now();
+            if parts.is_empty() {
+                return Ok(());
+            }
+            let turned: Vec<(usize, u8)> = parts
+                .iter()
+                .map(|&p| (p, 1 - self.states[p].min(1)))
+                .collect();
+            self.change(&turned, &parts, time)?;
+        }
+        Err(Failure::Chatter {
+            names: self.latest(),
+            time,
+            count: ROUNDS as u64,
+            within: 0.0,
+        })
     }
 
     /// For each level watch, whether its level was past at a point of earlier states.

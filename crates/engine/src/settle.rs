@@ -192,15 +192,46 @@ impl Run<'_> {
 
     /// The diodes whose state contradicts a restart; those in `fresh` were just turned over by
     /// their own condition and stay unless a value says otherwise beyond rounding.
-    pub(crate) fn wrong(&self, settled: &Restart, valves: &[usize], fresh: &[usize]) -> Vec<usize> {
-        let p = &settled.point;
-        let (volts, amperes) = (1e-9 * self.volts, 1e-9 * self.amperes);
+    fn wrong(&self, settled: &Restart, valves: &[usize], fresh: &[usize]) -> Vec<usize> {
+        self.contradicted(
+            &settled.equations,
+            &settled.point,
+            Some(&settled.impulses),
+            (valves, fresh),
+        )
+    }
+
+    /// The diodes whose state contradicts the present point, what an impulse left behind: one that
+    /// carried its charge forwards may have to block the current that follows.
+    pub(crate) fn contradicted_now(&self) -> Vec<usize> {
+        let valves: Vec<usize> = (0..self.states.len())
+            .filter(|&p| self.is_valve(p))
+            .collect();
+        match self.shelf.get(&self.states) {
+            Some(e) if !valves.is_empty() => {
+                self.contradicted(e, &self.point, None, (&valves, &valves))
+            }
+            _ => Vec::new(),
+        }
+    }
+
+    fn contradicted(
+        &self,
+        equations: &Equations,
+        p: &Point,
+        impulses: Option<&Impulses>,
+        (valves, fresh): (&[usize], &[usize]),
+    ) -> Vec<usize> {
         let n = self.net.nodes - 1;
         let most = |v: &[f64]| v.iter().fold(0.0_f64, |a, x| a.max(x.abs()));
         let (fast_volts, fast_amperes) = (
             1e-9 * most(&p.dy[..n]),
             1e-9 * most(&p.dy[n..]).max(most(&p.dil)),
         );
+        // Where nothing has flowed yet, what would within a thousandth of the span is the scale.
+        let soon = 1e-3 * self.setup.span;
+        let volts = 1e-9 * self.volts.max(1e9 * fast_volts * soon);
+        let amperes = 1e-9 * self.amperes.max(1e9 * fast_amperes * soon);
         let mut wrong = Vec::new();
         for &part in valves {
             for k in self.net.of_part[part].clone() {
@@ -209,15 +240,15 @@ impl Run<'_> {
                     continue;
                 };
                 let conducts = matches!(
-                    settled.equations.topology.modes[k],
+                    equations.topology.modes[k],
                     Mode::Tie { .. } | Mode::Resistive { .. }
                 );
-                let (v, i) = self.branch_state(&settled.equations, k, p);
+                let (v, i) = self.branch_state(equations, k, p);
                 let rate = crate::equations::volts(&p.dy, b.a, b.b);
                 let bad = if conducts {
-                    let form = current_form(&self.net, &settled.equations.topology.modes, k);
+                    let form = current_form(&self.net, &equations.topology.modes, k);
                     let slope = form.rate(p);
-                    let charge = settled.impulses.charge[k];
+                    let charge = impulses.map_or(0.0, |i| i.charge[k]);
                     charge < 0.0
                         || (charge == 0.0
                             && (i < -amperes
@@ -225,7 +256,7 @@ impl Run<'_> {
                                     && slope < -fast_amperes
                                     && !fresh.contains(&part))))
                 } else {
-                    let flux = settled.impulses.flux_across(b.a, b.b);
+                    let flux = impulses.map_or(0.0, |i| i.flux_across(b.a, b.b));
                     let over = v - threshold;
                     flux > 0.0
                         || (flux == 0.0

@@ -193,10 +193,11 @@ impl Cubic {
         let (mut a, mut pa) = (0.0, self.p0);
         for b in ends {
             let pb = if b == 1.0 { self.p1 } else { self.at(b) };
-            if pa >= 0.0 && pb < -dead {
+            // Within the deadband counts as not yet below, or a step's end there would hide a fall.
+            if pa >= -dead && pb < -dead {
                 return Some(self.zero_between(a, b));
             }
-            if pb >= 0.0 || pa < 0.0 || pb < -dead {
+            if pb >= 0.0 || pa < -dead || pb < -dead {
                 (a, pa) = (b, pb);
             }
         }

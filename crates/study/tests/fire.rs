@@ -537,3 +537,63 @@ fn a_ring_that_may_come_back_is_not_called_safe() {
     );
     assert_eq!(f.hazards[0].at_most_60_v_from, None);
 }
+
+/// Instants at which a part's events are, s.
+fn instants(f: &Fired, part: &str) -> Vec<f64> {
+    let at = f.parts.iter().position(|p| p == part).unwrap();
+    f.events
+        .iter()
+        .filter(|(e, _)| e.part == at)
+        .map(|(e, _)| e.time)
+        .collect()
+}
+
+fn check_instants(f: &Fired, part: &str, want: &[f64]) {
+    let got = instants(f, part);
+    assert_eq!(got.len(), want.len(), "{part}: {got:?} for {want:?}");
+    for (a, b) in got.iter().zip(want) {
+        assert!((a - b).abs() < 1e-9, "{part}: {got:?} for {want:?}");
+    }
+}
+
+#[test]
+fn a_diode_begins_to_conduct_where_nothing_has_flowed_before() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
+         diode d from x to a\n\
+         resistor r from x to ground = 10 ohm\n\
+         span 25 ms\n\
+         reading e = energy into r\n",
+    );
+    check_instants(&f, "d", &[10e-3, 20e-3]);
+    check(&f, "e", 100.0 * 100.0 / 10.0 / 2.0 * 10e-3, 1e-6);
+}
+
+/// A triangle of 100 V into 10 uF and 30 uF: the pump's node swings between 75 V and 0 V, then
+/// between the store's voltage and 0 V, 20 V a millisecond.
+#[test]
+fn a_voltage_doubler_turns_its_diodes_where_the_charge_says() {
+    let f = fired(
+        "voltage feed from p to ground = points(t; 0 s: 0 V; 5 ms: 100 V; 15 ms: -100 V; 25 ms: 100 V; 35 ms: -100 V)\n\
+         capacitor c1 from p to a = 10 uF\n\
+         diode d1 from ground to a\n\
+         diode d2 from a to b\n\
+         capacitor c2 from b to ground = 30 uF\n\
+         span 28 ms\n",
+    );
+    check_instants(&f, "d1", &[6.25e-3, 15e-3]);
+    check_instants(&f, "d2", &[0.0, 5e-3, 16.25e-3, 25e-3]);
+}
+
+/// 25 V in the pump's capacitor pass through the diode at once; the rising source then asks for
+/// a current backwards, so that it blocks at the same instant.
+#[test]
+fn a_diode_blocks_again_at_the_instant_of_its_impulse() {
+    let f = fired(
+        "voltage feed from p to ground = points(t; 0 s: 0 V; 5 ms: 100 V; 15 ms: -100 V)\n\
+         capacitor c1 from p to a = 10 uF, charged to 25 V\n\
+         diode d1 from ground to a\n\
+         span 12 ms\n",
+    );
+    check_instants(&f, "d1", &[0.0, 0.0, 10e-3]);
+}
