@@ -210,6 +210,8 @@ impl Run<'_> {
         };
         let to_share = scale / way.stretch.plan;
         let last = base.shares.len() - 1;
+        // What follows a stretch cut short at once must not be crossed in steps of its size.
+        let least = way.stretch.plan * step_share(FIRST) / parts;
         let mut h = 0.0;
         for (i, pair) in base.shares.windows(2).enumerate() {
             let [a, b] = pair else { continue };
@@ -246,14 +248,14 @@ impl Run<'_> {
                     if let Some(found) = self.stretch_to(equations, way, step_rule, h, cause)? {
                         return Ok(Some(found));
                     }
-                    return self.march_on(equations, way, h);
+                    return self.march_on(equations, way, h.max(least));
                 }
                 if let Some(cause) = self.one(equations, way, step_rule, h, share)? {
                     return Ok(Some(cause));
                 }
             }
         }
-        self.march_on(equations, way, h)
+        self.march_on(equations, way, h.max(least))
     }
 
     /// Goes on with steps of `h` until the plan's end or a condition.

@@ -597,3 +597,17 @@ fn a_diode_blocks_again_at_the_instant_of_its_impulse() {
     );
     check_instants(&f, "d1", &[0.0, 0.0, 10e-3]);
 }
+
+/// Nothing is stored here, so every stretch ends where the source says; charge 2 V / (ω R).
+#[test]
+fn a_diode_across_a_source_needs_no_more_steps_than_others() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
+         diode d from ground to a : slope 10 mohm\n\
+         span 30 ms\n\
+         reading q = charge through d\n",
+    );
+    check_instants(&f, "d", &[10e-3, 20e-3]);
+    check(&f, "q", 200.0 / (std::f64::consts::TAU * 50.0 * 0.01), 1e-6);
+    assert!(f.shot.steps < 100_000, "{}", f.shot.steps);
+}
