@@ -16,6 +16,7 @@ pub mod network;
 pub mod rates;
 pub mod record;
 pub mod restart;
+mod rounding;
 pub mod run;
 pub mod schedule;
 mod settle;

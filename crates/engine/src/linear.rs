@@ -172,11 +172,11 @@ impl Dense {
         for ((w, &r), s) in work.iter_mut().zip(&self.order).zip(&self.scale) {
             *w = x[r] * s;
         }
-        for (k, row) in self.lu.chunks_exact(n).enumerate() {
+        for (k, row) in self.lu.chunks_exact(n.max(1)).enumerate() {
             let (done, rest) = work.split_at_mut(k);
             rest[0] -= dot(&row[..k], done);
         }
-        for (k, row) in self.lu.chunks_exact(n).enumerate().rev() {
+        for (k, row) in self.lu.chunks_exact(n.max(1)).enumerate().rev() {
             let (rest, known) = work.split_at_mut(k + 1);
             rest[k] = (rest[k] - dot(&row[k + 1..], known)) * self.inverse[k];
         }

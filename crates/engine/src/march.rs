@@ -24,6 +24,8 @@ const FINEST: u32 = 60;
 const COARSEST_DRIVEN: u32 = 9;
 /// Where a chosen mesh begins.
 const FIRST: u32 = 10;
+/// Relative rounding of a voltage or a current out of a solution.
+const ROUNDING: f64 = 2e-14;
 /// A mode counts as fast against a step when rate times step is above this.
 const FAST: f64 = 2.0;
 
@@ -113,12 +115,12 @@ impl Run<'_> {
             let h = plan * size;
             let (mid, next) = (way.share + 0.5 * size, way.share + size);
             let (t_mid, t_next) = (way.time(mid), way.time(next));
-            let first_rule = if damp { Rule::Damped } else { rule };
+            let mut first_rule = if damp { Rule::Damped } else { rule };
             let mut stepper = self.stepper(equations);
             stepper.step(first_rule, &self.point, h, t_next, &mut whole)?;
             stepper.step(first_rule, &self.point, 0.5 * h, t_mid, &mut half)?;
             stepper.step(rule, &half, 0.5 * h, t_next, &mut full)?;
-            let error = self.distance(&whole, &full) / (2_f64.powi(order) - 1.0);
+            let error = self.distance(&whole, &full, h) / (2_f64.powi(order) - 1.0);
             if !error.is_finite() {
                 return Err(Failure::NotFinite {
                     what: "a voltage or a current".to_owned(),
@@ -129,7 +131,15 @@ impl Run<'_> {
                 power = (power + excess(error / tolerance, order)).min(FINEST);
                 continue;
             }
-            if damp {
+            // A mode that an event set off too faintly for the tolerance would still ring on in
+            // what hangs on its rate: it is damped once it is passed over.
+            if way.share == 0.0 && !damp && self.is_fast(equations, h)? {
+                first_rule = Rule::Damped;
+                let mut stepper = self.stepper(equations);
+                stepper.step(first_rule, &self.point, 0.5 * h, t_mid, &mut half)?;
+                stepper.step(rule, &half, 0.5 * h, t_next, &mut full)?;
+            }
+            if first_rule == Rule::Damped {
                 way.stretch.damped.push(way.step());
                 damp = false;
             }
@@ -153,6 +163,14 @@ impl Run<'_> {
         Ok(None)
     }
 
+    /// Whether a trapezoidal step of `h` passes over a mode and would ring.
+    fn is_fast(&self, equations: &mut Equations, h: f64) -> Result<bool, Failure> {
+        Ok(self.rule() == Rule::Trapezoidal
+            && rates(equations, &self.net, self.setup)?
+                .iter()
+                .any(|r| r * h > FAST))
+    }
+
     fn march_fixed(
         &mut self,
         equations: &mut Equations,
@@ -169,10 +187,7 @@ impl Run<'_> {
                 time: way.start,
             });
         }
-        let fast = rule == Rule::Trapezoidal
-            && rates(equations, &self.net, self.setup)?
-                .iter()
-                .any(|r| r * h.min(plan) > FAST);
+        let fast = self.is_fast(equations, h.min(plan))?;
         let mut k = 0.0;
         while k < n {
             k += 1.0;
@@ -344,8 +359,10 @@ impl Run<'_> {
             };
             // A passage within the deadband at the step's end is the landing itself.
             let side = self.side(equations, c, &self.point);
+            let (g0, _) = self.condition(equations, c, &self.point, side);
             let (g, _) = self.condition(equations, c, &to, side);
-            if g.abs() <= c.dead {
+            let dead = self.dead(c, &to);
+            if g0 > dead && g.abs() <= dead {
                 let share = (to.time - way.start) / way.stretch.plan;
                 self.accept(equations, way, to, share);
                 return Ok(Some(cause));
@@ -399,29 +416,33 @@ impl Run<'_> {
         way.share = share;
     }
 
-    /// Largest difference of two points' states, over the largest value of each state so far.
-    fn distance(&self, a: &Point, b: &Point) -> f64 {
+    /// Largest difference of two points' states a step of `h` on, over the largest value of each
+    /// state so far.
+    fn distance(&self, a: &Point, b: &Point, h: f64) -> f64 {
         let n = self.net.capacitances.len();
         // Neither a state that has not moved yet nor a wave's far forerunner asks for steps.
-        let (volts, amperes) = (1e-3 * self.volts, 1e-3 * self.amperes);
-        let one = |x: f64, y: f64, k: usize, floor: f64| {
+        let volts = (1e-3 * self.volts).max(1e5 * self.rounding.volts(self.amperes));
+        let amperes = (1e-3 * self.amperes).max(1e5 * self.rounding.amperes(self.volts));
+        // What rounding of all other voltages and currents moves a state by in a step is no error.
+        let (flux, charge) = (ROUNDING * self.volts * h, ROUNDING * self.amperes * h);
+        let one = |x: f64, y: f64, k: usize, floor: f64, rounding: f64| {
             let scale = self.largest[k].max(x.abs()).max(floor);
-            if scale > 0.0 {
-                (x - y).abs() / scale
-            } else {
+            let d = (x - y).abs();
+            if d <= rounding || scale <= 0.0 {
                 0.0
+            } else {
+                d / scale
             }
         };
-        let v =
-            a.vc.iter()
-                .zip(&b.vc)
-                .enumerate()
-                .map(|(k, (x, y))| one(*x, *y, k, volts));
-        let i =
-            a.il.iter()
-                .zip(&b.il)
-                .enumerate()
-                .map(|(k, (x, y))| one(*x, *y, n + k, amperes));
+        let v = a.vc.iter().zip(&b.vc).enumerate().map(|(k, (x, y))| {
+            let rounding = charge / self.net.capacitances[k].farads;
+            one(*x, *y, k, volts, rounding)
+        });
+        let i = a.il.iter().zip(&b.il).enumerate().map(|(k, (x, y))| {
+            let own = self.net.inductances[k].inverse.iter();
+            let inverse = own.fold(0.0_f64, |m, w| m.max(w.1.abs()));
+            one(*x, *y, n + k, amperes, flux * inverse)
+        });
         v.chain(i)
             .fold(0.0, |m, d| if d > m || d.is_nan() { d } else { m })
     }

@@ -21,6 +21,7 @@ use crate::meter::Meter;
 use crate::network::{Law, Network, name};
 use crate::record::{Reader, floats, stored};
 use crate::restart::Small;
+use crate::rounding::Rounding;
 use crate::schedule::Schedules;
 use crate::shot::{Balance, Request, Shot, Stretch};
 use crate::step::Rule;
@@ -47,6 +48,8 @@ pub struct Run<'a> {
     /// Largest voltage and current so far.
     pub(crate) volts: f64,
     pub(crate) amperes: f64,
+    /// What rounding alone amounts to.
+    pub(crate) rounding: Rounding,
     /// Largest value of each state so far, for the step's tolerance.
     pub(crate) largest: Vec<f64>,
     pub(crate) shot: Shot,
@@ -134,6 +137,7 @@ impl<'a> Run<'a> {
             corners,
             volts: 0.0,
             amperes: 0.0,
+            rounding: Rounding::new(&net, setup.span),
             largest,
             shot,
             readers: Vec::new(),
@@ -251,8 +255,8 @@ impl<'a> Run<'a> {
     /// What counts as rounding in voltages and currents.
     pub(crate) fn small(&self) -> Small {
         Small {
-            volts: 1e-10 * self.volts,
-            amperes: 1e-10 * self.amperes,
+            volts: (1e-10 * self.volts).max(self.rounding.volts(self.amperes)),
+            amperes: (1e-10 * self.amperes).max(self.rounding.amperes(self.volts)),
         }
     }
 

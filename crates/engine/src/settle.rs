@@ -50,7 +50,7 @@ impl Run<'_> {
             match self.attempt(&states, before, drive, time) {
                 Ok(settled) => {
                     let fresh = if round == 0 { forced } else { &[] };
-                    let wrong = self.wrong(&settled, &valves, fresh);
+                    let wrong = self.wrong(&settled, &valves, fresh, 1.0);
                     if wrong.is_empty() {
                         return Ok(settled);
                     }
@@ -105,7 +105,12 @@ impl Run<'_> {
         let start = self.states.clone();
         let mut masks: Vec<u32> = (0..1_u32 << valves.len()).collect();
         masks.sort_by_key(|m| m.count_ones());
-        for mask in masks {
+        // Where one diode's current is another's rounding, a narrower deadband tells them apart.
+        let bands = [1.0, 1e-3, 1e-6];
+        for (band, mask) in bands
+            .iter()
+            .flat_map(|b| masks.iter().map(move |m| (*b, *m)))
+        {
             let mut states = start.clone();
             for (i, &p) in valves.iter().enumerate() {
                 if mask >> i & 1 == 1 {
@@ -116,7 +121,7 @@ impl Run<'_> {
             let Ok(settled) = self.attempt(&states, before, drive, time) else {
                 continue;
             };
-            if self.wrong(&settled, valves, &[]).is_empty() {
+            if self.wrong(&settled, valves, &[], band).is_empty() {
                 return Ok(settled);
             }
             self.shelf.insert(states, settled.equations);
@@ -192,12 +197,13 @@ impl Run<'_> {
 
     /// The diodes whose state contradicts a restart; those in `fresh` were just turned over by
     /// their own condition and stay unless a value says otherwise beyond rounding.
-    fn wrong(&self, settled: &Restart, valves: &[usize], fresh: &[usize]) -> Vec<usize> {
+    fn wrong(&self, settled: &Restart, valves: &[usize], fresh: &[usize], band: f64) -> Vec<usize> {
         self.contradicted(
             &settled.equations,
             &settled.point,
             Some(&settled.impulses),
             (valves, fresh),
+            band,
         )
     }
 
@@ -209,7 +215,7 @@ impl Run<'_> {
             .collect();
         match self.shelf.get(&self.states) {
             Some(e) if !valves.is_empty() => {
-                self.contradicted(e, &self.point, None, (&valves, &valves))
+                self.contradicted(e, &self.point, None, (&valves, &valves), 1.0)
             }
             _ => Vec::new(),
         }
@@ -221,17 +227,28 @@ impl Run<'_> {
         p: &Point,
         impulses: Option<&Impulses>,
         (valves, fresh): (&[usize], &[usize]),
+        band: f64,
     ) -> Vec<usize> {
         let n = self.net.nodes - 1;
         let most = |v: &[f64]| v.iter().fold(0.0_f64, |a, x| a.max(x.abs()));
         let (fast_volts, fast_amperes) = (
-            1e-9 * most(&p.dy[..n]),
-            1e-9 * most(&p.dy[n..]).max(most(&p.dil)),
+            1e-9 * band * most(&p.dy[..n]),
+            1e-9 * band * most(&p.dy[n..]).max(most(&p.dil)),
         );
+        // An impulse that is rounding beside the others is none.
+        let (coulombs, webers) = impulses.map_or((0.0, 0.0), |i| {
+            (1e-12 * most(&i.charge), 1e-12 * most(&i.flux))
+        });
+        let above = |x: f64, rounding: f64| if x.abs() <= rounding { 0.0 } else { x };
         // Where nothing has flowed yet, what would within a thousandth of the span is the scale.
         let soon = 1e-3 * self.setup.span;
-        let volts = 1e-9 * self.volts.max(1e9 * fast_volts * soon);
-        let amperes = 1e-9 * self.amperes.max(1e9 * fast_amperes * soon);
+        let volts = 1e-9 * band * self.volts.max(1e9 / band * fast_volts * soon);
+        let amperes = 1e-9 * band * self.amperes.max(1e9 / band * fast_amperes * soon);
+        let volts = volts.max(self.rounding.volts(self.amperes));
+        let amperes = amperes.max(self.rounding.amperes(self.volts));
+        // A rate that moves nothing over the span is rounding; what it brings is watched for.
+        let fast_volts = fast_volts.max(volts / self.setup.span);
+        let fast_amperes = fast_amperes.max(amperes / self.setup.span);
         let mut wrong = Vec::new();
         for &part in valves {
             for k in self.net.of_part[part].clone() {
@@ -248,7 +265,7 @@ impl Run<'_> {
                 let bad = if conducts {
                     let form = current_form(&self.net, &equations.topology.modes, k);
                     let slope = form.rate(p);
-                    let charge = impulses.map_or(0.0, |i| i.charge[k]);
+                    let charge = impulses.map_or(0.0, |i| above(i.charge[k], coulombs));
                     charge < 0.0
                         || (charge == 0.0
                             && (i < -amperes
@@ -256,7 +273,7 @@ impl Run<'_> {
                                     && slope < -fast_amperes
                                     && !fresh.contains(&part))))
                 } else {
-                    let flux = impulses.map_or(0.0, |i| i.flux_across(b.a, b.b));
+                    let flux = impulses.map_or(0.0, |i| above(i.flux_across(b.a, b.b), webers));
                     let over = v - threshold;
                     flux > 0.0
                         || (flux == 0.0

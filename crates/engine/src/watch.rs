@@ -19,13 +19,27 @@ use crate::schedule::Watch;
 use crate::shot::Cause;
 use crate::step::{Cubic, Rule};
 
+/// Deadbands beyond which a diode's state is contradicted for certain.
+const UNSEEN: f64 = 1e4;
+
 /// What a condition watches; its function falls through zero when it is met.
 #[derive(Clone, Debug)]
 pub(crate) struct Condition {
     pub(crate) cause: Cause,
     pub(crate) kind: ConditionKind,
     /// Deadband below zero that a passage must leave.
-    pub(crate) dead: f64,
+    pub(crate) dead: Dead,
+}
+
+/// A deadband against rounding, as a share of what it lies in.
+#[derive(Clone, Copy, Debug)]
+pub(crate) enum Dead {
+    /// Of the largest voltage so far.
+    OfVolts(f64),
+    /// Of the largest current so far.
+    OfAmperes(f64),
+    /// So much.
+    Fixed(f64),
 }
 
 /// The functions of conditions.
@@ -74,9 +88,9 @@ impl Run<'_> {
                 Probe::BranchVoltage(b.part, k)
             };
             let (sign, offset, dead) = if conducts {
-                (1.0, 0.0, 1e-12 * self.amperes)
+                (1.0, 0.0, Dead::OfAmperes(1e-12))
             } else {
-                (-1.0, threshold, 1e-12 * self.volts)
+                (-1.0, threshold, Dead::OfVolts(1e-12))
             };
             found.push(Condition {
                 cause: Cause::Valve { branch },
@@ -110,7 +124,7 @@ impl Run<'_> {
                             Formula::Probe(p) => LevelSignal::Reader(reader(*p)),
                             other => LevelSignal::Formula(other.clone()),
                         };
-                        let dead = 1e-14 * level.abs();
+                        let dead = Dead::Fixed(1e-14 * level.abs());
                         found.push(Condition {
                             cause,
                             kind: ConditionKind::Level {
@@ -131,7 +145,7 @@ impl Run<'_> {
                         found.push(Condition {
                             cause,
                             kind,
-                            dead: 1e-12 * self.amperes,
+                            dead: Dead::OfAmperes(1e-12),
                         });
                     }
                     _ => {}
@@ -139,6 +153,19 @@ impl Run<'_> {
             }
         }
         found
+    }
+
+    /// A condition's deadband on the way to a point.
+    pub(crate) fn dead(&self, c: &Condition, to: &Point) -> f64 {
+        let most = |v: &[f64], least: f64| v.iter().fold(least, |a, x| a.max(x.abs()));
+        let (volts, amperes) = to.y.split_at((self.net.nodes - 1).min(to.y.len()));
+        let volts = most(volts, self.volts);
+        let amperes = most(&to.il, most(amperes, self.amperes));
+        match c.dead {
+            Dead::OfVolts(share) => (share * volts).max(self.rounding.volts(amperes)),
+            Dead::OfAmperes(share) => (share * amperes).max(self.rounding.amperes(volts)),
+            Dead::Fixed(x) => x,
+        }
     }
 
     /// Value and rate of a condition's function; `side` is the sign that a current's zero is
@@ -233,7 +260,18 @@ impl Run<'_> {
                     p1,
                     m1: h * d1,
                 };
-                if let Some(s) = cubic.first_fall(c.dead)
+                let dead = self.dead(c, end);
+                // A diode that is past its condition already and goes on has turned over unseen.
+                let unseen = matches!(c.kind, ConditionKind::Valve { .. })
+                    && p0 < -dead
+                    && p1 < 2.0 * p0
+                    && p1 < -UNSEEN * dead;
+                let fall = if unseen {
+                    Some(0.0)
+                } else {
+                    cubic.first_fall(dead)
+                };
+                if let Some(s) = fall
                     && first.is_none_or(|(best, _)| s < best)
                 {
                     first = Some((s, k));
@@ -299,7 +337,7 @@ impl Run<'_> {
             return 1.0;
         }
         let (v, d) = self.condition(equations, c, from, 1.0);
-        if v.abs() > c.dead {
+        if v.abs() > self.dead(c, from) {
             v.signum()
         } else {
             d.signum()

@@ -611,3 +611,148 @@ fn a_diode_across_a_source_needs_no_more_steps_than_others() {
     check(&f, "q", 200.0 / (std::f64::consts::TAU * 50.0 * 0.01), 1e-6);
     assert!(f.shot.steps < 100_000, "{}", f.shot.steps);
 }
+
+/// Both carry the charging current until the crest, 5 ms, and stop together.
+#[test]
+fn diodes_in_parallel_turn_over_together() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
+         capacitor c from a to x = 1 uF\n\
+         diode d from x to ground\n\
+         diode d2 from x to ground\n\
+         span 30 ms\n",
+    );
+    check_instants(&f, "d", &[0.0, 5e-3]);
+    check_instants(&f, "d2", &[0.0, 5e-3]);
+}
+
+/// Beside the charging current of 20 A the 1 mA of the third diode is nearly rounding; it goes on
+/// until the source's zero while the first blocks where the charging current does.
+#[test]
+fn a_small_current_beside_a_large_one_keeps_its_diode_conducting() {
+    let f = fired(
+        "voltage feed from n0 to ground = 100 V * cos(2 * pi * 1000 Hz * t)\n\
+         diode d0 from s to ground : slope 10 mohm\n\
+         diode d1 from n0 to s\n\
+         diode d3 from n0 to n1 : slope 10 mohm\n\
+         capacitor c1 from s to ground = 33 uF\n\
+         resistor r0 from n1 to ground = 100000 ohm\n\
+         span 2.5 ms\n",
+    );
+    let tau = 33e-6 * 0.01;
+    let w = std::f64::consts::TAU * 1000.0;
+    // i = cos/R - ωC sin = 0 where tan(ωt) = 1/(ωRC).
+    let off = (1.0 / (w * tau)).atan() / w;
+    check_instants(
+        &f,
+        "d1",
+        &[0.0, off, 0.75e-3, off + 1e-3, 1.75e-3, off + 2e-3],
+    );
+    check_instants(
+        &f,
+        "d3",
+        &[0.0, 0.25e-3, 0.75e-3, 1.25e-3, 1.75e-3, 2.25e-3],
+    );
+}
+
+/// At 0 s the source's 100 V go into three capacitors; through the diode nothing passes but
+/// rounding, and then a current.
+#[test]
+fn a_diode_across_a_capacitor_at_an_impulse() {
+    let f = fired(
+        "voltage feed from n0 to ground = 100 V * cos(2 * pi * 100 Hz * t)\n\
+         diode d0 from n1 to s\n\
+         capacitor c0 from ground to n1 = 1 uF\n\
+         capacitor c1 from n0 to n1 = 33 uF\n\
+         capacitor c2 from s to n1 = 10 uF\n\
+         resistor r1 from ground to s = 10 ohm\n\
+         span 3 ms\n\
+         reading v0 = voltage across r1 at 0 s\n",
+    );
+    // 33 uF against 1 uF; R (C0 + C1) = 340 us is the time constant of what follows.
+    check(&f, "v0", -100.0 * 33.0 / 34.0, 1e-6);
+    let (w, tau) = (std::f64::consts::TAU * 100.0, 10.0 * 34e-6);
+    // v' = -v/τ - ω A sin(ωt), v(0) = A = 100 V 33/34: the diode blocks where v is 0.
+    let of = |t: f64| {
+        let k = w * tau / (1.0 + (w * tau).powi(2));
+        let forced = |t: f64| -k * ((w * t).sin() - w * tau * (w * t).cos());
+        forced(t) + (1.0 - forced(0.0)) * (-t / tau).exp()
+    };
+    let (mut low, mut high) = (0.0, 2e-3);
+    for _ in 0..60 {
+        let m = 0.5 * (low + high);
+        if of(m) > 0.0 { low = m } else { high = m }
+    }
+    check_instants(&f, "d0", &[0.0, low]);
+}
+
+/// Where a node floats between blocking diodes, and 1 uF with 10 mohm are passed over in steps a
+/// thousand times as long, no current rings and nothing chatters.
+#[test]
+fn a_node_between_blocking_diodes_asks_for_no_steps() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
+         resistor rs from a to s = 5 ohm\n\
+         diode d from n1 to s\n\
+         diode d2 from ground to n1 : slope 10 mohm\n\
+         diode d3 from a to s\n\
+         capacitor c1 from ground to s = 1 uF\n\
+         span 38 ms\n\
+         reading low = lowest current through d\n\
+         reading passed = charge through d\n",
+    );
+    assert!(f.shot.steps < 300_000, "{}", f.shot.steps);
+    assert!(f.shot.events.len() < 12, "{:?}", f.shot.events);
+    // 100 V / 5.01 ohm for a half wave and 8 ms of the next; the capacitor delays it by 5 us.
+    let (passed, bound) = reading(&f, "passed");
+    let w = std::f64::consts::TAU * 50.0;
+    let near = 100.0 / 5.01 / w * (3.0 - (w * 8e-3).cos());
+    assert!(
+        (passed / near - 1.0).abs() < 1e-3 && bound < 1e-6,
+        "{passed} ± {bound:e}"
+    );
+}
+
+/// Coils in parallel at a node that nothing else touches carry nothing but rounding.
+#[test]
+fn a_current_that_is_rounding_asks_for_no_steps() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
+         inductor l from a to x = 10 mH\n\
+         inductor l1 from a to x = 1 mH\n\
+         span 50 ms\n\
+         reading most = largest current through l\n",
+    );
+    let (most, bound) = reading(&f, "most");
+    assert!(most + bound < 1e-12, "{most} ± {bound:e}");
+    assert!(f.shot.steps < 100_000, "{}", f.shot.steps);
+}
+
+/// A part whose ends meet does nothing, and is no mistake.
+#[test]
+fn a_capacitor_across_itself_is_left_alone() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V\n\
+         capacitor c from a to a = 1 uF, charged to 5 V\n\
+         resistor r from a to ground = 10 ohm\n\
+         span 1 ms\n\
+         reading e = energy into r\n",
+    );
+    check(&f, "e", 1.0, 1e-6);
+}
+
+/// Source and switch lie in loops that nothing drives: 1e-17 A of rounding in the coil, which its
+/// diode would stop within 1e-19 s, is no current.
+#[test]
+fn rounding_turns_no_diode() {
+    let f = fired(
+        "voltage feed from n0 to ground = 100 V * sin(2 * pi * 1000 Hz * t)\n\
+         resistor rs from n0 to s = 5 ohm\n\
+         diode d1 from n0 to n1 : slope 0.1 ohm\n\
+         inductor l0 from n1 to n0 = 10 mH\n\
+         switch sw from n1 to s : open, closes at 0.3 ms, opens at 1.6 ms\n\
+         span 1.9 ms\n",
+    );
+    check_instants(&f, "d1", &[]);
+    assert!(f.shot.steps < 100_000, "{}", f.shot.steps);
+}
