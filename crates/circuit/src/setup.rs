@@ -43,6 +43,14 @@ pub struct Limits {
     pub nesting: u64,
 }
 
+impl Element {
+    /// Whether it stores energy.
+    #[must_use]
+    pub const fn stores(&self) -> bool {
+        matches!(self, Element::Capacitor { .. } | Element::Inductor { .. })
+    }
+}
+
 impl Default for Limits {
     fn default() -> Self {
         Limits {

@@ -31,6 +31,7 @@ use pulsewright_circuit::formula::{Leaves, NoLeaves, Side};
 use pulsewright_circuit::setup::Setup;
 use sprs::TriMat;
 
+use crate::exact::System;
 use crate::failure::Failure;
 use crate::forms::{Form, probe_form};
 use crate::linear::Factor;
@@ -114,6 +115,8 @@ pub struct Equations {
     pub rates: Option<Vec<f64>>,
     /// Whether what is remarkable about the graph has been noted.
     pub noted: bool,
+    /// The same as `X' = A X`, where exact propagation runs.
+    exact: Option<Box<System>>,
 }
 
 /// Unknown number of a node's potential; `None` for ground.
@@ -171,6 +174,7 @@ impl Equations {
             held,
             rates: None,
             noted: false,
+            exact: None,
         };
         equations.refuse_controlled_index_2(net, setup)?;
         Ok(equations)
@@ -480,10 +484,85 @@ impl Equations {
                 .sum();
             point.il[j] += theta * point.dil[j];
         }
-        for (_, cut) in &self.topology.cuts {
-            self.close_cut(cut, &point.sources, &mut point.il);
-        }
+        self.close_cuts(&point.sources, &mut point.il);
         Ok(())
+    }
+
+    /// Sets the currents that cuts give from the others and the sources.
+    pub(crate) fn close_cuts(&self, drive: &Drive, il: &mut [f64]) {
+        for (_, cut) in &self.topology.cuts {
+            self.close_cut(cut, drive, il);
+        }
+    }
+
+    /// The capacitances that no loop gives and the inductances that no cut gives.
+    pub(crate) fn independent(&self, net: &Network) -> (Vec<usize>, Vec<usize>) {
+        let mut given = vec![false; net.inductances.len()];
+        for (_, cut) in &self.topology.cuts {
+            if let Some(&(k, _)) = cut.first()
+                && let Mode::Inductance(j) = self.topology.modes[k]
+            {
+                given[j] = true;
+            }
+        }
+        (
+            (0..net.capacitances.len())
+                .filter(|&c| !self.dependent(net.capacitances[c].branch))
+                .collect(),
+            (0..net.inductances.len()).filter(|&j| !given[j]).collect(),
+        )
+    }
+
+    /// Makes ready for exact propagation over a stretch: where it starts, and an instant inside it.
+    ///
+    /// # Errors
+    ///
+    /// [`Failure::NotExact`], [`Failure::Singular`].
+    pub(crate) fn prepare(
+        &mut self,
+        net: &Network,
+        setup: &Setup,
+        stretch: (f64, f64),
+    ) -> Result<(), Failure> {
+        if let Some(system) = &mut self.exact
+            && system.moved(net, setup, stretch)?
+        {
+            return Ok(());
+        }
+        self.exact = Some(Box::new(System::new(self, net, setup, stretch)?));
+        Ok(())
+    }
+
+    /// Norm of the matrix of exact propagation, 1/s; 0 where it is not made ready.
+    pub(crate) fn exact_norm(&self) -> f64 {
+        self.exact.as_ref().map_or(0.0, |s| s.propagator.norm())
+    }
+
+    /// Propagates a point by `h` exactly, into `to`, whose time and sources are taken; the matrix of
+    /// the step is kept unless it is for `once`.
+    ///
+    /// # Errors
+    ///
+    /// [`Failure::Singular`].
+    pub(crate) fn propagate(
+        &mut self,
+        net: &Network,
+        setup: &Setup,
+        from: &Point,
+        (h, once): (f64, bool),
+        to: &mut Point,
+    ) -> Result<(), Failure> {
+        if let Some(system) = &mut self.exact {
+            let mut x = system.states(from);
+            if once {
+                system.propagator.advance_once(h, &mut x);
+            } else {
+                system.propagator.advance(h, &mut x);
+            }
+            system.write(&x, to);
+        }
+        self.close_cuts(&to.sources, &mut to.il);
+        self.solve(net, setup, 0.0, to)
     }
 
     /// Sets the current of a cut's own inductance, its first entry, from the others.
@@ -577,8 +656,22 @@ impl Equations {
         let silent = Drive {
             jets: vec![[0.0; 3]; net.sources.len()],
         };
+        self.response(net, setup, vc, il, &silent, 1)
+    }
+
+    /// Rates of change of the states at (`vc`, `il`), whose cuts are closed: with constants and
+    /// sources as they are (`order` 0), or of derivatives (`order` 1: `[_, value, rate]` of each source).
+    pub(crate) fn response(
+        &mut self,
+        net: &Network,
+        setup: &Setup,
+        vc: &[f64],
+        il: &[f64],
+        drive: &Drive,
+        order: usize,
+    ) -> Result<(Vec<f64>, Vec<f64>), Failure> {
         let mut y = vec![0.0; net.unknowns()];
-        self.right_side(net, vc, il, &silent, 1, &mut y);
+        self.right_side(net, vc, il, drive, order, &mut y);
         let i = self
             .factor(net, 0.0)
             .map_err(|column| self.singular(net, setup, column, 0.0))?;

@@ -97,6 +97,12 @@ pub enum Failure {
         /// Parts that may be at fault.
         names: Vec<String>,
     },
+    /// Exact propagation does not apply, and why.
+    #[error("exact propagation does not apply: {why}; `integrate by trapezoidal rule` does")]
+    NotExact {
+        /// Why, naming the part.
+        why: String,
+    },
     /// What this version cannot do, in words.
     #[error("{0}")]
     NotYet(String),

@@ -6,6 +6,7 @@
 
 mod book;
 pub mod equations;
+mod exact;
 pub mod failure;
 pub mod forms;
 mod jump;

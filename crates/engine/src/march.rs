@@ -47,7 +47,12 @@ impl Way {
         u32::try_from(self.stretch.times.len() - 1).unwrap_or(u32::MAX)
     }
 
-    fn time(&self, share: f64) -> f64 {
+    /// Where the last point stands, as a share of the plan.
+    pub(crate) fn share(&self) -> f64 {
+        self.share
+    }
+
+    pub(crate) fn time(&self, share: f64) -> f64 {
         if share >= 1.0 {
             self.end
         } else {
@@ -70,11 +75,17 @@ impl Run<'_> {
             unasked: 0,
         };
         way.stretch.plan = end - way.start;
+        if self.rule() == Rule::Exact {
+            self.prepare(&mut equations, end)?;
+        }
         let first = self.point.clone();
         self.write(&mut way.stretch, &first, 0.0);
         self.meter_start(&equations, &first);
         let index = self.shot.stretches.len();
         let cause = match self.request.mesh {
+            Mesh::Chosen { tolerance } if self.rule() == Rule::Exact => {
+                self.march_exact(&mut equations, &mut way, tolerance)?
+            }
             Mesh::Chosen { tolerance } => self.march_chosen(&mut equations, &mut way, tolerance)?,
             Mesh::Fixed(h) => self.march_fixed(&mut equations, &mut way, h)?,
             Mesh::Halved { of, times } => match of.stretches.get(index) {
@@ -321,6 +332,18 @@ impl Run<'_> {
         share: f64,
     ) -> Result<Option<Cause>, Failure> {
         self.stepper(equations).slopes(&mut to)?;
+        self.finish_sloped(equations, way, rule, to, share)
+    }
+
+    /// The same for a point whose slopes are there.
+    pub(crate) fn finish_sloped(
+        &mut self,
+        equations: &mut Equations,
+        way: &mut Way,
+        rule: Rule,
+        to: Point,
+        share: f64,
+    ) -> Result<Option<Cause>, Failure> {
         if !way.conditions.is_empty()
             && let Some(cause) = self.watch(equations, way, rule, &to)?
         {
@@ -380,7 +403,7 @@ impl Run<'_> {
         }
     }
 
-    fn count(&mut self, way: &mut Way, steps: u64) -> Result<(), Failure> {
+    pub(crate) fn count(&mut self, way: &mut Way, steps: u64) -> Result<(), Failure> {
         self.shot.steps += steps;
         if self.shot.steps > self.setup.limits.steps {
             return Err(Failure::Limit {

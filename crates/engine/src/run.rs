@@ -64,13 +64,8 @@ impl<'a> Run<'a> {
     ///
     /// # Errors
     ///
-    /// As [`Network::new`], [`Failure::NotYet`] for exact propagation.
+    /// As [`Network::new`].
     pub fn new(setup: &'a Setup, request: &'a Request<'a>) -> Result<Run<'a>, Failure> {
-        if setup.method == Method::Exact {
-            return Err(Failure::NotYet(
-                "exact propagation comes with a later version; `integrate by trapezoidal rule` is there".to_owned(),
-            ));
-        }
         if setup.parts.len() as u64 > setup.limits.parts {
             return Err(Failure::Limit {
                 limit: "parts",
@@ -101,6 +96,7 @@ impl<'a> Run<'a> {
                 dissipated: vec![0.0; parts],
                 ..Balance::default()
             },
+            exact: setup.method == Method::Exact,
             smallest_step: f64::INFINITY,
             unknowns: net.unknowns(),
             ..Shot::default()
@@ -119,7 +115,7 @@ impl<'a> Run<'a> {
                     branch,
                     part: b.part,
                     supplies,
-                    before: (0.0, 0.0),
+                    before: crate::meter::Reading::default(),
                 })
             })
             .collect();
@@ -262,10 +258,10 @@ impl<'a> Run<'a> {
 
     /// The rule of the run's method.
     pub(crate) fn rule(&self) -> Rule {
-        if self.setup.method == Method::BackwardEuler {
-            Rule::BackwardEuler
-        } else {
-            Rule::Trapezoidal
+        match self.setup.method {
+            Method::BackwardEuler => Rule::BackwardEuler,
+            Method::Exact => Rule::Exact,
+            _ => Rule::Trapezoidal,
         }
     }
 

@@ -79,6 +79,10 @@ pub struct Shot {
     pub smallest_step: f64,
     /// Largest accepted step, s.
     pub largest_step: f64,
+    /// Whether its points are exact but for rounding.
+    pub exact: bool,
+    /// Relative rounding of exact propagation, some `2 eps sqrt(|A| t)`; 0 for methods that step.
+    pub rounding: f64,
     /// What was noticed.
     pub notices: Vec<Notice>,
     /// Unknowns of the equations.

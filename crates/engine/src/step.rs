@@ -3,11 +3,12 @@
 //! ```text
 //!   trapezoidal      x₊ = x + h/2 (x' + x₊')     order 2, A-stable
 //!   backward Euler   x₊ = x + h x₊'              order 1, L-stable
+//!   exact            x₊ = exp(A h) x                order: all (exact/)
 //!   damped           two backward-Euler half steps, which share the trapezoidal step's matrix
 //!                    (Marti and Lin, IEEE Trans. Power Systems 4(2), 1989)
 //! ```
 //!
-//! A method is one entry of [`Rule`]; all of them are the same equations with another θ and base.
+//! A method is one entry of [`Rule`]; those that step are the same equations with another θ and base.
 
 use pulsewright_circuit::formula::Side;
 use pulsewright_circuit::setup::Setup;
@@ -25,6 +26,10 @@ pub enum Rule {
     BackwardEuler,
     /// Two backward-Euler half steps.
     Damped,
+    /// Exact propagation, the equations being ready for it; the step's matrix is kept.
+    Exact,
+    /// The same, for a step of which there is no other.
+    ExactOnce,
 }
 
 /// The circuit and its equations, as a step needs them.
@@ -60,6 +65,33 @@ impl Stepper<'_> {
                 self.implicit(from, 0.0, 0.5 * h, time - 0.5 * h, &mut middle)?;
                 self.implicit(&middle, 0.0, 0.5 * h, time, to)
             }
+            Rule::Exact | Rule::ExactOnce => {
+                self.begin(from, time, to);
+                let once = rule == Rule::ExactOnce;
+                self.equations
+                    .propagate(self.net, self.setup, from, (h, once), to)?;
+                self.finite(to)
+            }
+        }
+    }
+
+    fn begin(&self, from: &Point, time: f64, to: &mut Point) {
+        to.time = time;
+        copy(&mut to.vc, &from.vc);
+        copy(&mut to.il, &from.il);
+        copy(&mut to.dvc, &from.dvc);
+        copy(&mut to.dil, &from.dil);
+        if to.sources.jets.len() != from.sources.jets.len() {
+            to.sources.clone_from(&from.sources);
+        }
+        to.sources.at(self.net, time, Side::Before);
+    }
+
+    fn finite(&self, to: &Point) -> Result<(), Failure> {
+        if to.y.iter().all(|v| v.is_finite()) {
+            Ok(())
+        } else {
+            Err(self.not_finite(to))
         }
     }
 
@@ -72,11 +104,7 @@ impl Stepper<'_> {
         time: f64,
         to: &mut Point,
     ) -> Result<(), Failure> {
-        to.time = time;
-        copy(&mut to.vc, &from.vc);
-        copy(&mut to.il, &from.il);
-        copy(&mut to.dvc, &from.dvc);
-        copy(&mut to.dil, &from.dil);
+        self.begin(from, time, to);
         if before != 0.0 {
             to.vc
                 .iter_mut()
@@ -87,16 +115,8 @@ impl Stepper<'_> {
                 .zip(&from.dil)
                 .for_each(|(x, d)| *x += before * d);
         }
-        if to.sources.jets.len() != from.sources.jets.len() {
-            to.sources.clone_from(&from.sources);
-        }
-        to.sources.at(self.net, time, Side::Before);
         self.equations.solve(self.net, self.setup, after, to)?;
-        if to.y.iter().all(|v| v.is_finite()) {
-            Ok(())
-        } else {
-            Err(self.not_finite(to))
-        }
+        self.finite(to)
     }
 
     fn not_finite(&self, p: &Point) -> Failure {

@@ -299,6 +299,11 @@ impl Run<'_> {
         s: f64,
         h: f64,
     ) -> Result<(Point, f64), Failure> {
+        let rule = if rule == Rule::Exact {
+            Rule::ExactOnce
+        } else {
+            rule
+        };
         let side = self.side(equations, c, from);
         let (mut low, mut high) = (0.0_f64, h);
         let mut x = s * h;

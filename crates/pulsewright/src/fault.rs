@@ -82,6 +82,15 @@ that time. Name what the voltage is to be measured against.
 
     claim peak: highest voltage from plus to minus is at most 2 kV",
     ),
+    (
+        "P0760",
+        "exact propagation does not apply",
+        "Exact propagation takes sources that are, between their corners, sums of whole powers of t times exponentials \
+and sines of linear functions of t, and up to 400 states. `integrate by trapezoidal rule` takes any.
+
+    voltage feed from a to ground = 1 kV / (1 + (t / 1 us)^2)
+    integrate by exact propagation",
+    ),
 ];
 
 /// The mistake of a netlist that is to be judged and makes no claim.
@@ -132,6 +141,10 @@ pub fn of(failure: &Failure, circuit: &Circuit) -> Option<Fault> {
         }
         Failure::Chatter { names, .. } => {
             at("P0756", named(circuit, names), "the first part of these")
+        }
+        Failure::NotExact { .. } => {
+            let stated = circuit.draft().run.method.map_or(Span::NONE, |m| m.1);
+            at("P0760", stated, "asked for here")
         }
         Failure::NotFinite { what, .. } => {
             source(circuit, what).and_then(|s| at("P0757", s, "this source"))

@@ -15,13 +15,19 @@ use crate::claims::{Bounded, Judgement, Limits, expressions, judge, limits};
 use crate::error::StudyError;
 use crate::hazards::hazards;
 use crate::ladder::{Ladder, Turn};
+use crate::opinion::second_opinion;
 use crate::options::Options;
-use crate::outcome::{Answer, ClaimResult, Fired, Found, ReadingResult, Set, SetValue, Verdict};
+use crate::outcome::{
+    Answer, ClaimResult, Fired, Found, ReadingResult, SecondOpinion, Set, SetValue, Verdict,
+};
 use crate::plan::Plan;
 use crate::readings::{Case, Reader};
 use crate::remarks::remarks;
 use crate::series::{Rules, Series};
 use crate::waveform::Record;
+
+/// How much smaller the first mesh's error is made where two methods disagree.
+const FINER: f64 = 16.0;
 
 /// Fires one shot at the nominal let-values, or at those of `options.case`, and judges it.
 ///
@@ -52,13 +58,24 @@ pub(crate) fn run(
         lets: &lets,
     };
     let plan = Plan::new(case, options);
+    let applies = applying(&plan)?;
     let judge = Judge {
         plan: &plan,
-        applies: applying(&plan)?,
+        applies,
     };
-    let ladder = Ladder::climb(&plan, options, turn, &|series, rules| {
-        judge.is_decided(series, rules)
-    })?;
+    let decided = |series: &[Series], rules| judge.is_decided(series, rules);
+    let mut ladder = Ladder::climb(&plan, options, turn, &decided)?;
+    let mut opinion = opine(&plan, &ladder, options, turn);
+    if matches!(opinion, Err(StudyError::Disagreement { .. })) {
+        // Once in some thousand readings a bound is too narrow: a finer ladder settles which it is.
+        let finer = Plan {
+            tolerance: plan.tolerance / FINER,
+            ..plan.clone()
+        };
+        ladder = Ladder::climb(&finer, options, turn, &decided)?;
+        opinion = opine(&finer, &ladder, options, turn);
+    }
+    let second_opinion = opinion?;
     let claims = judge.claims(&ladder.readings, ladder.rules)?;
     let balance = ladder.ledger.result(&setup, ladder.rules)?;
     let reader = Reader::new(case, &ladder.shot);
@@ -75,6 +92,7 @@ pub(crate) fn run(
         } else {
             Vec::new()
         },
+        second_opinion,
         hazards: hazards(
             &plan,
             &Record::new(ladder.stores.as_ref().unwrap_or(&ladder.shot)),
@@ -93,6 +111,19 @@ pub(crate) fn run(
             .collect(),
         shot: ladder.shot,
     })
+}
+
+/// The second opinion, where it is asked for.
+fn opine(
+    plan: &Plan<'_>,
+    ladder: &Ladder,
+    options: &Options<'_>,
+    turn: Turn,
+) -> Result<Option<SecondOpinion>, StudyError> {
+    if options.alone {
+        return Ok(None);
+    }
+    second_opinion(plan, ladder, options, turn).map(Some)
 }
 
 /// Which claims apply in a case.

@@ -20,11 +20,10 @@ use crate::readings::Reader;
 use crate::series::{Rules, Series};
 use crate::stress::Loads;
 
-/// Error of a step of the first mesh, over the scale of the states: coarse, but so that three
-/// halvings are mostly enough for a part in a million.
-const TOLERANCE: f64 = 5e-5;
 /// How often the first mesh is halved at least and at most.
 const LEAST: u32 = 3;
+/// The same by exact propagation.
+const LEAST_EXACT: u32 = 1;
 const MOST: u32 = 12;
 /// How many numbers a shot may record (8 bytes each) before refinement beyond the least ends.
 const NUMBERS: u64 = 40_000_000;
@@ -84,15 +83,20 @@ impl Ladder {
         let fixed = plan.case.setup.step;
         let mesh = fixed.map_or(
             Mesh::Chosen {
-                tolerance: TOLERANCE,
+                tolerance: plan.tolerance,
             },
             Mesh::Fixed,
         );
+        let least = if plan.case.setup.method == Method::Exact {
+            LEAST_EXACT
+        } else {
+            LEAST
+        };
         let first = climb.shoot(mesh, 0)?;
         climb.take(&first);
         let mut finest = None;
         for times in 1..=MOST {
-            let more = times > LEAST;
+            let more = times > least;
             if more && (fixed.is_some() || climb.is_enough(decided) || climb.is_too_much()) {
                 break;
             }
@@ -181,19 +185,23 @@ impl<'p, 'a, 'o> Climb<'p, 'a, 'o> {
         self.ledger.push(&shot.balance);
         self.log.push(&shot.events);
         let damped = shot.stretches.iter().any(|s| !s.damped.is_empty());
-        let exact = self.plan.case.setup.method == Method::Trapezoidal && !damped;
+        let adds_up = self.plan.case.setup.method == Method::Trapezoidal && !damped;
         self.precision = Precision {
             steps: shot.steps,
-            noise: if exact { self.ledger.noise() } else { 0.0 },
+            noise: if adds_up || shot.exact {
+                self.ledger.noise() + shot.rounding
+            } else {
+                0.0
+            },
         };
     }
 
     fn rules(&self) -> Rules {
         let setup = self.plan.case.setup;
-        let order = if setup.method == Method::BackwardEuler {
-            Order::First
-        } else {
-            Order::Second
+        let order = match setup.method {
+            Method::BackwardEuler => Order::First,
+            Method::Exact => Order::Fourth,
+            _ => Order::Second,
         };
         Rules {
             order,

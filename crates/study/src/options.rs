@@ -31,6 +31,8 @@ pub struct Options<'a> {
     pub stress: bool,
     /// The channels in place of those that the netlist states.
     pub channels: Option<Vec<Expr>>,
+    /// Whether the run goes without its second opinion.
+    pub alone: bool,
     /// Told how far the run has come; may stop it.
     pub hook: Option<Hook<'a>>,
 }

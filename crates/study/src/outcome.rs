@@ -186,6 +186,28 @@ pub struct BalanceResult {
     pub bound: f64,
 }
 
+/// What another method made of the same readings.
+#[derive(Clone, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct SecondOpinion {
+    /// The method in words.
+    pub method: String,
+    /// Why there is none; `None` where the two agree.
+    pub missing: Option<String>,
+    /// The reading that differs most against the bounds; `None` where there is no number.
+    pub largest: Option<Difference>,
+}
+
+/// How far two methods are apart in a reading.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Difference {
+    /// The reading's name, or the reading as the language writes it.
+    pub reading: String,
+    /// The difference over the sum of the two bounds.
+    pub share: f64,
+}
+
 /// A remark: what was seen, what it may mean, what to try.
 #[derive(Clone, Debug, PartialEq)]
 #[cfg_attr(feature = "serde", derive(serde::Serialize))]
@@ -215,6 +237,8 @@ pub struct Fired {
     pub balance: BalanceResult,
     /// What each part had to stand; empty where not asked for.
     pub stress: Vec<Stress>,
+    /// What another method says; `None` where it was not asked.
+    pub second_opinion: Option<SecondOpinion>,
     /// Hazards.
     pub hazards: Vec<Hazard>,
     /// Remarks on the model and the run.

@@ -5,7 +5,7 @@
 
 use std::collections::HashSet;
 
-use pulsewright_circuit::draft::Claim;
+use pulsewright_circuit::draft::{Claim, Method};
 use pulsewright_circuit::setup::Element;
 use pulsewright_circuit::{Expr, Probe};
 use pulsewright_engine::ports;
@@ -13,6 +13,12 @@ use pulsewright_engine::ports;
 use crate::claims::expressions;
 use crate::options::Options;
 use crate::readings::{Case, needs};
+
+/// Error of a step of the first mesh, over the scale of the states: coarse, but so that three
+/// halvings are mostly enough for a part in a million.
+const TOLERANCE: f64 = 5e-5;
+/// Error of the cubics of the first mesh by exact propagation.
+const EXACT: f64 = 2e-12;
 
 /// How many channels are taken where none is stated.
 const CHANNELS: usize = 8;
@@ -22,6 +28,7 @@ const STRESS_PARTS: usize = 200;
 const STORES: usize = 2000;
 
 /// What a case is fired for.
+#[derive(Clone)]
 pub struct Plan<'a> {
     /// The circuit with its numbers.
     pub case: Case<'a>,
@@ -31,6 +38,8 @@ pub struct Plan<'a> {
     pub channels: Vec<Expr>,
     /// What to record.
     pub probes: Vec<Probe>,
+    /// Error of a step of the first mesh.
+    pub tolerance: f64,
     /// Where to land, s.
     pub landings: Vec<f64>,
     /// Whether stress is read.
@@ -61,6 +70,11 @@ impl<'a> Plan<'a> {
             readings,
             channels,
             probes: Vec::new(),
+            tolerance: if case.setup.method == Method::Exact {
+                EXACT
+            } else {
+                TOLERANCE
+            },
             landings: Vec::new(),
             stress: options.stress && few,
             stores: stores(case),
@@ -113,6 +127,26 @@ impl<'a> Plan<'a> {
     #[must_use]
     pub fn place(&self, expr: &Expr) -> Option<usize> {
         self.readings.iter().position(|e| e == expr)
+    }
+
+    /// Records for the readings alone.
+    pub fn read_only(&mut self) {
+        let needed = needs(self.case, &self.readings);
+        let mut known = HashSet::new();
+        self.probes = needed.probes;
+        self.probes.retain(|p| known.insert(*p));
+        self.channels.clear();
+        self.stores.clear();
+        self.stores_apart = false;
+        self.stress = false;
+    }
+
+    /// What a reading is called: its name, else its text.
+    #[must_use]
+    pub fn name(&self, expr: &Expr) -> String {
+        let draft = self.case.circuit.draft();
+        let named = draft.readings.iter().find(|r| r.value == *expr);
+        named.map_or_else(|| expr.to_string(), |r| r.name.text.clone())
     }
 
     /// The claims of the netlist.

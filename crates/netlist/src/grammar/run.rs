@@ -40,10 +40,6 @@ impl Parser<'_> {
             Method::BackwardEuler => "Euler",
             _ => "propagation",
         })?;
-        if method == Method::Exact {
-            let what = "`exact propagation`".to_owned();
-            return self.slip(self.span_since(from), What::Later { what });
-        }
         Ok((method, self.span_since(from)))
     }
 

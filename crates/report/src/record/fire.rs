@@ -2,8 +2,8 @@
 
 use super::shot::events;
 use super::{
-    BalanceRecord, ClaimRecord, EventRecord, HazardRecord, Input, Origin, Program, ReadingRecord,
-    RemarkRecord, Run, StressRecord,
+    BalanceRecord, ClaimRecord, EventRecord, HazardRecord, Input, OpinionRecord, Origin, Program,
+    ReadingRecord, RemarkRecord, Run, StressRecord,
 };
 use pulsewright_study::outcome::Fired;
 use serde::{Deserialize, Serialize};
@@ -29,6 +29,8 @@ pub struct FireRecord {
     pub balance: BalanceRecord,
     /// What each part had to stand.
     pub stress: Vec<StressRecord>,
+    /// What another method says of the readings; `null` where it was not asked.
+    pub second_opinion: Option<OpinionRecord>,
     /// Hazards.
     pub hazards: Vec<HazardRecord>,
     /// Remarks.
@@ -48,6 +50,7 @@ pub fn fire(fired: &Fired, origin: &Origin<'_>) -> FireRecord {
         events: events(fired),
         balance: (&fired.balance).into(),
         stress: fired.stress.iter().map(Into::into).collect(),
+        second_opinion: fired.second_opinion.as_ref().map(Into::into),
         hazards: fired.hazards.iter().map(Into::into).collect(),
         remarks: fired
             .remarks

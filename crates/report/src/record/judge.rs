@@ -1,8 +1,8 @@
 //! `pulsewright.judge/1`: every case, and each claim over all of them.
 
 use super::{
-    BalanceRecord, ClaimRecord, Finite, HazardRecord, Input, Ordered, Origin, Program,
-    ReadingRecord, RemarkRecord, Run, SetRecord, set_record,
+    BalanceRecord, ClaimRecord, Finite, HazardRecord, Input, OpinionRecord, Ordered, Origin,
+    Program, ReadingRecord, RemarkRecord, Run, SetRecord, set_record,
 };
 use pulsewright_study::outcome::{ClaimResult, ClaimSummary, Fired, Found, Judged};
 use serde::{Deserialize, Serialize};
@@ -37,6 +37,8 @@ pub struct CaseRecord {
     pub claims: Vec<ClaimRecord>,
     /// Where the joules went.
     pub balance: BalanceRecord,
+    /// What another method says of the readings; `null` where it was not asked.
+    pub second_opinion: Option<OpinionRecord>,
     /// Hazards.
     pub hazards: Vec<HazardRecord>,
 }
@@ -90,6 +92,7 @@ fn case(fired: &Fired) -> CaseRecord {
         readings: fired.readings.iter().map(Into::into).collect(),
         claims: fired.claims.iter().map(Into::into).collect(),
         balance: (&fired.balance).into(),
+        second_opinion: fired.second_opinion.as_ref().map(Into::into),
         hazards: fired.hazards.iter().map(Into::into).collect(),
     }
 }

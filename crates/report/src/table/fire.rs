@@ -4,6 +4,7 @@ use super::balance::balance;
 use super::claims::{claims, readings};
 use super::events::events;
 use super::hazards::hazards;
+use super::opinion::opinion;
 use super::stress::stress;
 use super::{remarks, set_in_words};
 use crate::look::{Look, Tone, heading, paragraph};
@@ -30,6 +31,7 @@ pub fn fire(fired: &Fired, origin: &Origin<'_>, look: Look) -> String {
     claims(&mut out, look, &fired.claims);
     events(&mut out, look, fired);
     balance(&mut out, look, &fired.balance);
+    opinion(&mut out, look, std::slice::from_ref(fired));
     stress(&mut out, look, &fired.stress);
     remarks(&mut out, look, &fired.remarks, origin.text);
     defaults(&mut out, look, &fired.defaults);

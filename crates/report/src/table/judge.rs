@@ -3,6 +3,7 @@
 use super::claims::{asked, reason};
 use super::fire::{defaults, opening};
 use super::hazards::{hazards, worst};
+use super::opinion::opinion;
 use super::{Align, Cell, Grid, bound_cell, remarks, set_in_words, tone};
 use crate::look::{Look, Tone, heading, paragraph};
 use crate::number::{Scale, quantity};
@@ -34,6 +35,7 @@ pub fn judge(judged: &Judged, origin: &Origin<'_>, look: Look) -> String {
     for k in 0..judged.claims.len() {
         claim(&mut out, look, k, &judged.cases);
     }
+    opinion(&mut out, look, &judged.cases);
     remarks(
         &mut out,
         look,

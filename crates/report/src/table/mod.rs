@@ -12,6 +12,7 @@ mod grid;
 mod hazards;
 mod judge;
 mod list;
+mod opinion;
 mod stress;
 
 pub use fire::fire;

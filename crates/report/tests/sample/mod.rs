@@ -4,8 +4,8 @@ use pulsewright_circuit::{Dimension, Span};
 use pulsewright_engine::{Event, Shot};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{
-    Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Extreme, Fired, Found, Hazard,
-    Judged, ReadingResult, Remark, Set, SetValue, Stress, Verdict,
+    Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Difference, Extreme, Fired, Found,
+    Hazard, Judged, ReadingResult, Remark, SecondOpinion, Set, SetValue, Stress, Verdict,
 };
 
 /// The text that the remark's span is in.
@@ -188,6 +188,14 @@ pub fn fired() -> Fired {
             bound: 3.01e-9,
         },
         stress: vec![bank(), contact()],
+        second_opinion: Some(SecondOpinion {
+            method: "exact propagation".to_owned(),
+            missing: None,
+            largest: Some(Difference {
+                reading: "dose".to_owned(),
+                share: 0.0312,
+            }),
+        }),
         hazards: vec![Hazard {
             part: "bank".to_owned(),
             voltage: 4700.0,

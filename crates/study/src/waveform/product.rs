@@ -15,6 +15,8 @@
 //!
 //! Charge goes by the trapezoid `h (i0 + i1) / 2` in the same way, which is exactly the change
 //! of the charge that a capacitor holds, and the same through all parts in series.
+//!
+//! In a shot by exact propagation both are the integrals of the cubics.
 
 use pulsewright_engine::Stretch;
 
@@ -53,7 +55,11 @@ pub fn energy(record: &Record<'_>, v: usize, i: usize, window: &[Interval]) -> S
         let (Some(v), Some(i)) = (cubic(stretch, v, n), cubic(stretch, i, n)) else {
             return;
         };
-        let mean = 0.25 * (v.v0 + v.v1) * (i.v0 + i.v1) * v.length();
+        let mean = if record.shot.exact {
+            v.product(&i)
+        } else {
+            0.25 * (v.v0 + v.v1) * (i.v0 + i.v1) * v.length()
+        };
         sum.add(shared(&v, from, to, mean, |a, b| {
             v.between(a, b).product(&i.between(a, b))
         }));
@@ -69,7 +75,11 @@ pub fn charge(record: &Record<'_>, i: usize, window: &[Interval]) -> Sum {
         let Some(i) = cubic(stretch, i, n) else {
             return;
         };
-        let trapezoid = 0.5 * (i.v0 + i.v1) * i.length();
+        let trapezoid = if record.shot.exact {
+            i.integral()
+        } else {
+            0.5 * (i.v0 + i.v1) * i.length()
+        };
         let net = shared(&i, from, to, trapezoid, |a, b| i.between(a, b).integral());
         sum.net += net;
         sum.gross += if i.v0 * i.v1 >= 0.0 {

@@ -1,0 +1,205 @@
+//! The second opinion: the same readings by another method, compared within their bounds.
+//!
+//! A stepped run is checked by exact propagation, an exact one by the trapezoidal rule. They share
+//! the equations at an instant, the restarts and the reading of waveforms, and nothing of how a
+//! circuit gets from one instant to the next. Where exact propagation does not apply, that is said.
+
+use pulsewright_circuit::draft::Method;
+use pulsewright_circuit::setup::Setup;
+use pulsewright_engine::Failure;
+
+use crate::error::StudyError;
+use crate::ladder::{Ladder, Turn};
+use crate::options::Options;
+use crate::outcome::{Difference, Found, SecondOpinion};
+use crate::plan::Plan;
+use crate::readings::Case;
+
+/// So many storing parts at most get a second opinion: its matrices are full.
+const STORES: usize = 60;
+/// Steps that it may take, over those of the run, and at least.
+const STEPS: (u64, u64) = (20, 200_000);
+/// What the error of its first mesh is of the error that the run is allowed.
+const FINER: f64 = 1e-3;
+/// Differences of this share of a value are rounding, whatever the bounds.
+const ROUNDING: f64 = 1e-14;
+
+/// A second opinion on a ladder, by the other method.
+///
+/// # Errors
+///
+/// [`StudyError::Disagreement`] where a reading differs by more than both bounds;
+/// [`StudyError::Cancelled`].
+pub(crate) fn second_opinion(
+    plan: &Plan<'_>,
+    ladder: &Ladder,
+    options: &Options<'_>,
+    turn: Turn,
+) -> Result<SecondOpinion, StudyError> {
+    let setup = other(plan.case.setup, ladder.shot.steps);
+    let stores = plan.case.setup.parts.iter().filter(|p| p.element.stores());
+    if setup.method == Method::Exact && stores.count() > STORES {
+        return Ok(none(
+            &setup,
+            format!("more than {STORES} parts store energy"),
+        ));
+    }
+    fired_by(&setup, plan, ladder, options, turn)
+}
+
+/// The setup with the other method in force.
+fn other(setup: &Setup, steps: u64) -> Setup {
+    let mut other = setup.clone();
+    other.method = if setup.method == Method::Exact {
+        Method::Trapezoidal
+    } else {
+        Method::Exact
+    };
+    other.step = None;
+    other.limits.steps = steps
+        .saturating_mul(STEPS.0)
+        .max(STEPS.1)
+        .min(setup.limits.steps);
+    other
+}
+
+fn none(setup: &Setup, why: String) -> SecondOpinion {
+    SecondOpinion {
+        method: setup.method.words().to_owned(),
+        missing: Some(why),
+        largest: None,
+    }
+}
+
+fn fired_by(
+    setup: &Setup,
+    plan: &Plan<'_>,
+    ladder: &Ladder,
+    options: &Options<'_>,
+    turn: Turn,
+) -> Result<SecondOpinion, StudyError> {
+    let bare = Options {
+        stress: false,
+        ..options.clone()
+    };
+    let mut again = Plan::new(Case { setup, ..plan.case }, &bare);
+    again.read_only();
+    if setup.method == Method::Exact {
+        again.tolerance = (FINER * setup.error).clamp(1e-12, 1e-8);
+    }
+    let second = match Ladder::climb(&again, &bare, turn, &|_, _| true) {
+        Ok(second) => second,
+        Err(StudyError::Engine(Failure::NotExact { why })) => return Ok(none(setup, why)),
+        Err(StudyError::Engine(failure)) => return Ok(none(setup, failure.to_string())),
+        Err(other) => return Err(other),
+    };
+    let mut largest: Option<Difference> = None;
+    for (k, expr) in plan.readings.iter().enumerate() {
+        let (Some(a), Some(b)) = (ladder.readings.get(k), second.readings.get(k)) else {
+            continue;
+        };
+        let (a, b) = (a.found(ladder.rules), b.found(second.rules));
+        let Some(share) = share(&a, &b) else { continue };
+        if share > 1.0 || share.is_nan() {
+            return Err(StudyError::Disagreement {
+                reading: plan.name(expr),
+                methods: [plan.case.setup, setup].map(|s| s.method.words().to_owned()),
+                answers: [a, b].map(|f| words(&f)),
+            });
+        }
+        if largest.as_ref().is_none_or(|l| share > l.share) {
+            largest = Some(Difference {
+                reading: plan.name(expr),
+                share,
+            });
+        }
+    }
+    Ok(SecondOpinion {
+        method: setup.method.words().to_owned(),
+        missing: None,
+        largest,
+    })
+}
+
+/// The difference over the sum of the bounds; infinite where only one has a number; `None` where
+/// there is nothing to compare.
+fn share(a: &Found, b: &Found) -> Option<f64> {
+    match (a, b) {
+        (Found::Value { value: x, bound: p }, Found::Value { value: y, bound: q }) => {
+            let room = p + q + ROUNDING * x.abs().max(y.abs());
+            let difference = (x - y).abs();
+            Some(if difference == 0.0 {
+                0.0
+            } else {
+                difference / room
+            })
+        }
+        (Found::Value { .. }, _) | (_, Found::Value { .. }) => Some(f64::INFINITY),
+        _ => None,
+    }
+}
+
+fn words(found: &Found) -> String {
+    match found {
+        Found::Value { value, bound } => format!("{value} ± {bound:.1e}"),
+        Found::Absent(why) | Found::Unbounded(why) | Found::Floating(why) => why.clone(),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use pulsewright_circuit::setup::Element;
+
+    const STAGE: &str = "capacitor bank from top to ground = 32 uF, charged to 5 kV\n\
+         switch fire from top to a : open, closes at 1 us\n\
+         inductor choke from a to b = 25 mH, winding 10 ohm\n\
+         resistor chest from b to ground = 50 ohm\n\
+         span 5 ms\n\
+         reading dose = energy into chest\n\
+         reading crest = largest current through chest\n";
+
+    fn with<T>(run: impl FnOnce(&Plan<'_>, &Ladder, &Options<'_>) -> T) -> T {
+        let circuit = pulsewright_netlist::read(STAGE.as_bytes(), "stage")
+            .unwrap_or_else(|m| panic!("{m}"))
+            .circuit;
+        let lets = circuit.lets(&[]).unwrap();
+        let setup = circuit.setup(&lets).unwrap();
+        let case = Case {
+            circuit: &circuit,
+            setup: &setup,
+            lets: &lets,
+        };
+        let options = Options::default();
+        let plan = Plan::new(case, &options);
+        let ladder = Ladder::climb(&plan, &options, Turn { case: 1, of: 1 }, &|_, _| true).unwrap();
+        run(&plan, &ladder, &options)
+    }
+
+    #[test]
+    fn two_methods_agree_on_the_stage() {
+        with(|plan, ladder, options| {
+            let o = second_opinion(plan, ladder, options, Turn { case: 1, of: 1 }).unwrap();
+            assert_eq!(o.missing, None);
+            assert!(o.largest.unwrap().share < 1.0);
+        });
+    }
+
+    /// A method that is wrong by 2 in 100,000, as if it took the coil for a larger one.
+    #[test]
+    fn a_broken_method_is_found_out() {
+        with(|plan, ladder, options| {
+            let mut broken = other(plan.case.setup, 1000);
+            for p in &mut broken.parts {
+                if let Element::Inductor { henrys, .. } = &mut p.element {
+                    *henrys *= 1.00002;
+                }
+            }
+            let found = fired_by(&broken, plan, ladder, options, Turn { case: 1, of: 1 });
+            let Err(StudyError::Disagreement { reading, .. }) = found else {
+                panic!("{found:?}")
+            };
+            assert!(reading == "dose" || reading == "crest", "{reading}");
+        });
+    }
+}
