@@ -27,6 +27,8 @@ use crate::shot::{Balance, Request, Shot, Stretch};
 use crate::step::Rule;
 use crate::topology::Mode;
 
+/// Rounding of voltages and currents over the largest of them.
+const NOISE: f64 = 1e-13;
 /// Instants closer than this share of their size are one.
 const SAME: f64 = 4.0 * f64::EPSILON;
 
@@ -159,6 +161,11 @@ impl<'a> Run<'a> {
             self.jump(cause)?;
         }
         self.shot.balance.stored_end = stored(&self.net, &self.point.vc, &self.point.il);
+        self.shot.largest = [self.volts, self.amperes];
+        self.shot.noise = [
+            (NOISE * self.volts).max(self.rounding.volts(self.amperes)),
+            (NOISE * self.amperes).max(self.rounding.amperes(self.volts)),
+        ];
         if !self.shot.smallest_step.is_finite() {
             self.shot.smallest_step = 0.0;
         }

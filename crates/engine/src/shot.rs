@@ -83,6 +83,10 @@ pub struct Shot {
     pub exact: bool,
     /// Relative rounding of exact propagation, some `2 eps sqrt(|A| t)`; 0 for methods that step.
     pub rounding: f64,
+    /// Largest voltage and current there was, V and A.
+    pub largest: [f64; 2],
+    /// What of these is rounding, V and A.
+    pub noise: [f64; 2],
     /// What was noticed.
     pub notices: Vec<Notice>,
     /// Unknowns of the equations.

@@ -4,6 +4,8 @@
 //! the equations at an instant, the restarts and the reading of waveforms, and nothing of how a
 //! circuit gets from one instant to the next. Where exact propagation does not apply, that is said.
 
+use pulsewright_circuit::Expr;
+use pulsewright_circuit::dimension::ONE;
 use pulsewright_circuit::draft::Method;
 use pulsewright_circuit::setup::Setup;
 use pulsewright_engine::Failure;
@@ -99,7 +101,10 @@ fn fired_by(
             continue;
         };
         let (a, b) = (a.found(ladder.rules), b.found(second.rules));
-        let Some(share) = share(&a, &b) else { continue };
+        let noise = noise(plan.case, expr, ladder);
+        let Some(share) = share(&a, &b, noise) else {
+            continue;
+        };
         if share > 1.0 || share.is_nan() {
             return Err(StudyError::Disagreement {
                 reading: plan.name(expr),
@@ -121,12 +126,27 @@ fn fired_by(
     })
 }
 
+/// What of a reading is rounding of the circuit's largest voltage and current: its size with one
+/// of its factors replaced by that factor's rounding.
+fn noise(case: Case<'_>, expr: &Expr, ladder: &Ladder) -> f64 {
+    let d = case.circuit.dimension(expr);
+    let whole = |x: i16| (x % ONE == 0 && x >= 0).then_some(i32::from(x / ONE));
+    let (Some(v), Some(a), Some(s)) = (whole(d.volt), whole(d.ampere), whole(d.second)) else {
+        return 0.0;
+    };
+    let ([volts, amperes], [dv, da]) = (ladder.shot.largest, ladder.shot.noise);
+    let size = |v: i32, a: i32| volts.powi(v) * amperes.powi(a) * case.setup.span.powi(s);
+    let part = |n: i32, size: f64| if n > 0 { f64::from(n) * size } else { 0.0 };
+    let found = part(v, dv * size((v - 1).max(0), a)) + part(a, da * size(v, (a - 1).max(0)));
+    if found.is_finite() { found } else { 0.0 }
+}
+
 /// The difference over the sum of the bounds; infinite where only one has a number; `None` where
 /// there is nothing to compare.
-fn share(a: &Found, b: &Found) -> Option<f64> {
+fn share(a: &Found, b: &Found, noise: f64) -> Option<f64> {
     match (a, b) {
         (Found::Value { value: x, bound: p }, Found::Value { value: y, bound: q }) => {
-            let room = p + q + ROUNDING * x.abs().max(y.abs());
+            let room = p + q + noise + ROUNDING * x.abs().max(y.abs());
             let difference = (x - y).abs();
             Some(if difference == 0.0 {
                 0.0

@@ -756,3 +756,18 @@ fn rounding_turns_no_diode() {
     check_instants(&f, "d1", &[]);
     assert!(f.shot.steps < 100_000, "{}", f.shot.steps);
 }
+
+/// Two methods that round a current of nothing differently do not disagree.
+#[test]
+fn rounding_is_no_disagreement() {
+    let f = fired(
+        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
+         diode d from b to a : threshold 0.7 V\n\
+         resistor r from a to b = 1 kohm\n\
+         inductor l from b to ground = 10 mH\n\
+         span 30 ms\n\
+         reading most = lowest current through d\n",
+    );
+    let opinion = f.second_opinion.unwrap();
+    assert_eq!(opinion.missing, None);
+}
