@@ -1,6 +1,6 @@
 //! Every public result and input may be sent to and shared between threads.
 
-use pulsewright::{Circuit, Draft, Error, Fired, Judged, LetValue, Mistakes, Netlist};
+use pulsewright::{Circuit, Draft, Error, Fired, Judged, LetValue, Mistakes, Modes, Netlist};
 
 fn shared<T: Send + Sync>() {}
 
@@ -13,6 +13,7 @@ fn results_and_inputs_are_send_and_sync() {
     shared::<Judged>();
     shared::<LetValue>();
     shared::<Mistakes>();
+    shared::<Modes>();
     shared::<Netlist>();
     shared::<pulsewright::StudyError>();
     shared::<pulsewright::Options<'static>>();
@@ -22,4 +23,5 @@ fn results_and_inputs_are_send_and_sync() {
     shared::<pulsewright::report::record::FireRecord>();
     shared::<pulsewright::report::record::JudgeRecord>();
     shared::<pulsewright::report::record::MistakesRecord>();
+    shared::<pulsewright::report::record::ModesRecord>();
 }
