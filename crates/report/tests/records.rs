@@ -4,7 +4,8 @@ mod sample;
 mod schema;
 
 use pulsewright_report::record::{
-    self, Bytes, FireRecord, JudgeRecord, MistakeRecord, MistakesRecord, fire, judge,
+    self, Bytes, FireRecord, JudgeRecord, MistakeRecord, MistakesRecord, ModesRecord, fire, judge,
+    modes,
 };
 
 fn mistakes() -> MistakesRecord {
@@ -37,6 +38,11 @@ fn the_record_of_mistakes() {
 }
 
 #[test]
+fn the_record_of_modes() {
+    insta::assert_snapshot!(record::text(&modes(&sample::modes(), &sample::origin())));
+}
+
+#[test]
 fn records_read_back_to_the_same() {
     let shot = fire(&sample::fired(), &sample::origin());
     assert_eq!(
@@ -52,6 +58,11 @@ fn records_read_back_to_the_same() {
         serde_json::from_str::<MistakesRecord>(&record::text(&mistakes())).unwrap(),
         mistakes()
     );
+    let found = modes(&sample::modes(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<ModesRecord>(&record::text(&found)).unwrap(),
+        found
+    );
 }
 
 #[test]
@@ -65,6 +76,10 @@ fn records_fit_their_schemas() {
         &record::text(&judge(&sample::judged(), &sample::origin())),
     );
     schema::check("pulsewright.mistakes-1.json", &record::text(&mistakes()));
+    schema::check(
+        "pulsewright.modes-1.json",
+        &record::text(&modes(&sample::modes(), &sample::origin())),
+    );
 }
 
 #[test]

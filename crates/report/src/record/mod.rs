@@ -13,6 +13,7 @@ mod finite;
 mod fire;
 mod judge;
 mod mistakes;
+mod modes;
 mod reading;
 mod shot;
 
@@ -20,6 +21,7 @@ pub use finite::{Finite, Ordered};
 pub use fire::{FireRecord, fire};
 pub use judge::{CaseRecord, JudgeRecord, SummaryRecord, WorstRecord, judge};
 pub use mistakes::{Bytes, MistakeRecord, MistakesRecord};
+pub use modes::{ModeRecord, ModesRecord, TopologyRecord, modes};
 pub(crate) use reading::unit as unit_of;
 pub use reading::{AnswerRecord, ClaimRecord, ReadingRecord};
 pub use shot::{

@@ -12,6 +12,7 @@ mod grid;
 mod hazards;
 mod judge;
 mod list;
+mod modes;
 mod stress;
 
 pub use fire::fire;
@@ -19,6 +20,7 @@ pub use grid::{Align, Cell, Grid};
 pub use hazards::CAUTIONS;
 pub use judge::judge;
 pub use list::list;
+pub use modes::modes;
 
 use crate::look::{Look, Tone, paragraph};
 use crate::number;

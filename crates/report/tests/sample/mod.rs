@@ -1,12 +1,14 @@
 //! A hand-made result with one of everything, so that pages and records need no run.
 
 use pulsewright_circuit::{Dimension, Span};
+use pulsewright_engine::modes::{Kind, NaturalMode};
 use pulsewright_engine::{Event, Shot};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{
     Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Extreme, Fired, Found, Hazard,
     Judged, ReadingResult, Remark, Set, SetValue, Stress, Verdict,
 };
+use pulsewright_study::{Modes, TopologyModes};
 
 /// The text that the remark's span is in.
 pub const TEXT: &str = "title \"Field unit\"\nlet load = 50 ohm\n";
@@ -216,6 +218,61 @@ pub fn fired() -> Fired {
         }],
         parts: vec!["bank".to_owned(), "fire".to_owned()],
         changes: vec!["closes".to_owned(), "opens".to_owned()],
+    }
+}
+
+fn mode(real: f64, imaginary: f64, kind: Kind, energy: &[(usize, f64)]) -> NaturalMode {
+    let pair = imaginary > 0.0;
+    NaturalMode {
+        real,
+        imaginary,
+        count: if pair { 2 } else { 1 },
+        damping_ratio: pair.then(|| -real / real.hypot(imaginary)),
+        kind,
+        energy: energy.to_vec(),
+        electric: energy.iter().filter(|e| e.0 == 0).map(|e| e.1).sum(),
+    }
+}
+
+/// A bank that is held, rings, and is held again, with a slow leak and five parts in one mode.
+pub fn modes() -> Modes {
+    let open = |from, to| TopologyModes {
+        from,
+        to,
+        states: vec![("fire".to_owned(), "open".to_owned())],
+        modes: vec![mode(0.0, 0.0, Kind::Holds, &[(0, 0.75), (1, 0.25)])],
+    };
+    let many = [
+        (0, 0.5),
+        (1, 0.2),
+        (2, 0.15),
+        (3, 0.1),
+        (4, 0.049),
+        (5, 0.001),
+    ];
+    let closed = TopologyModes {
+        from: 1e-6,
+        to: 25.312_4e-3,
+        states: vec![("fire".to_owned(), "closed".to_owned())],
+        modes: vec![
+            mode(0.0, 0.0, Kind::Holds, &[(2, 1.0)]),
+            mode(-312.5, 0.0, Kind::Decays, &[(1, 1.0)]),
+            mode(-600.0, 800.0, Kind::Underdamped, &many),
+            mode(0.0, 6e6, Kind::Undamped, &[(0, 0.5), (2, 0.5)]),
+        ],
+    };
+    Modes {
+        set: load(50.0),
+        topologies: vec![open(0.0, 1e-6), closed, open(25.312_4e-3, 30e-3)],
+        parts: ["bank", "snub", "choke", "stray", "cable", "probe"]
+            .map(str::to_owned)
+            .to_vec(),
+        defaults: vec!["start at rest".to_owned()],
+        method: "trapezoidal rule".to_owned(),
+        span: 30e-3,
+        steps: 1234,
+        smallest_step: 12e-9,
+        largest_step: 34e-6,
     }
 }
 
