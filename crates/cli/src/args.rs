@@ -129,6 +129,23 @@ pub enum Verb {
         #[arg(long)]
         json: bool,
     },
+    /// Find the natural frequencies in each topology that a shot passes through
+    #[command(
+        long_about = MODES,
+        after_help = "example:\n  pulsewright modes stage.shot --set load=150ohm"
+    )]
+    Modes {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        #[command(flatten)]
+        case: Case,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+    },
     /// Print the channels as CSV, at the run's own steps or evenly
     #[command(after_help = "example:\n  pulsewright waveform stage.shot --every 10us -o pulse.csv")]
     Waveform {
@@ -167,6 +184,28 @@ const LONG_ABOUT: &str = "Judges the pulse of a capacitor-discharge circuit agai
 
 Reads a netlist: the circuit, its firing sequence, readings and claims, in one text file. Fires it, bounds the numerical \
 error of every reading, and answers each claim with holds, fails or undecided.";
+
+/// The page of `modes`.
+const MODES: &str = "Find the natural frequencies in each topology that a shot passes through
+
+Fires one shot. For each state of the switches and diodes on its way, from one instant to another, it lists how the \
+circuit moves when it is left to itself, slowest first:
+
+  underdamped        a pair that rings and dies away
+  critically damped  a pair on the edge of ringing
+  overdamped         one of the two decays of a pair that is damped more than that
+  decays             dies away by itself, as a capacitor into a resistor does
+  undamped           rings for ever: nothing in it takes energy
+  holds              stays: a charge that has no way to flow off, a current that nothing brakes
+  grows              which takes a controlled source
+
+The time constant is for a factor of e, the frequency is that of the damped ringing, and the damping is the ratio to \
+critical. The last column tells which parts hold the energy of the mode, in the mean over a cycle; inductors that are \
+coupled share what they hold in common evenly. A capacitor whose voltage the others of its loop give, and an inductor \
+whose current the others of its cut give, bring no mode.
+
+The natural frequency itself is minus one over the time constant, plus and minus j times 2 pi times the frequency; the \
+record (--json) has both parts, in 1/s and rad/s.";
 
 /// What `--help` says last.
 const EXIT_CODES_AND_CAUTIONS: &str = "examples:

@@ -196,10 +196,31 @@ fn a_record_names_its_input_and_holds_the_readings() {
 }
 
 #[test]
+fn modes_are_listed_for_each_topology() {
+    let folder = folder();
+    let path = stage(&folder, "cases load = 25 ohm, 100 ohm");
+    let output = run("modes", &path, &["--json", "--case", "2"]);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    let record = record(&output);
+    assert_eq!(record["record"], "pulsewright.modes/1");
+    let [open, closed] = [0, 1].map(|k| &record["topologies"][k]);
+    assert_eq!(open["states"]["fire"], "open");
+    assert_eq!(open["modes"][0]["kind"], "holds");
+    assert_eq!(
+        (&closed["from"], &closed["to"]),
+        (&1e-6.into(), &0.08.into())
+    );
+    assert_eq!(closed["modes"][0]["kind"], "decays");
+    let tau = closed["modes"][0]["time_constant"].as_f64().unwrap();
+    assert!((tau - 3.2e-3).abs() < 1e-15, "{tau}");
+    assert_eq!(closed["modes"][0]["energy"]["bank"], 1.0);
+}
+
+#[test]
 fn the_same_input_gives_the_same_bytes() {
     let folder = folder();
     let path = stage(&folder, HOLDS);
-    for verb in ["fire", "judge"] {
+    for verb in ["fire", "judge", "modes"] {
         assert_eq!(
             run(verb, &path, &["--json"]).stdout,
             run(verb, &path, &["--json"]).stdout

@@ -5,6 +5,7 @@ mod fire;
 mod judge;
 mod list;
 mod manual;
+mod modes;
 mod neaten;
 mod watch;
 mod waveform;
@@ -25,6 +26,7 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Check { json: true, .. }
             | Verb::Fire { json: true, .. }
             | Verb::Judge { json: true, .. }
+            | Verb::Modes { json: true, .. }
     );
     let done = match verb {
         Verb::Check {
@@ -55,6 +57,12 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             settings,
             json,
         } => judge::judge(&file, &settings.set, json, shell),
+        Verb::Modes {
+            file,
+            settings,
+            case,
+            json,
+        } => modes::modes(&file, &settings.set, case.case, json, shell),
         Verb::Waveform {
             file,
             settings,
