@@ -163,6 +163,7 @@ impl<'a> Run<'a> {
             self.jump(cause)?;
         }
         self.shot.balance.stored_end = stored(&self.net, &self.point.vc, &self.point.il);
+        self.shot.factorisations = self.shelf.values().map(|e| e.factorisations).sum();
         if !self.shot.smallest_step.is_finite() {
             self.shot.smallest_step = 0.0;
         }
