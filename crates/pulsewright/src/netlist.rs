@@ -7,7 +7,7 @@ use pulsewright_circuit::{Circuit, LetValue, Lets};
 use pulsewright_netlist::{Mistakes, Source};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{Fired, Judged, Set, SetValue};
-use pulsewright_study::{Modes, Options, StudyError};
+use pulsewright_study::{Methods, Modes, Options, Rungs, StudyError};
 use sha2::{Digest, Sha256};
 
 /// Let-values given from outside, by name.
@@ -213,6 +213,16 @@ impl Netlist {
     /// ```
     pub fn modes(&self, options: &Options<'_>) -> Result<Modes, Error> {
         pulsewright_study::modes(self.circuit(), options).map_err(|e| self.error(e))
+    }
+
+    /// Compares the integrators on one case over a ladder of steps. What is held is said in
+    /// `options`, as for [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    pub fn methods(&self, options: &Options<'_>, rungs: &Rungs<'_>) -> Result<Methods, Error> {
+        pulsewright_study::methods(self.circuit(), options, rungs).map_err(|e| self.error(e))
     }
 
     /// Options that hold the let-values that this netlist was read with.

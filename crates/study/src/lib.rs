@@ -5,7 +5,7 @@
 //! ```
 //!
 //! [`fire`] fires one case and reads it; [`judge`] does so for every case; [`modes()`] tells how
-//! fast the topologies of a case move. All return values that hold all a report shows. This crate knows no text format and no equations: it reads
+//! fast the topologies of a case move; [`methods()`] compares the integrators. All return values that hold all a report shows. This crate knows no text format and no equations: it reads
 //! waveforms ([`waveform`]), measures ([`readings`]), compares meshes ([`bounds`]) and judges
 //! ([`claims`]).
 
@@ -19,6 +19,7 @@ mod events;
 mod fire;
 mod hazards;
 mod ladder;
+mod methods;
 mod modes;
 mod options;
 pub mod outcome;
@@ -32,6 +33,7 @@ pub mod waveform;
 pub use cases::judge;
 pub use error::StudyError;
 pub use fire::fire;
+pub use methods::{Compared, MethodErrors, MethodWork, Methods, RunError, Rungs, Work, methods};
 pub use modes::{Modes, TopologyModes, modes};
 pub use options::{Hook, Options, Progress};
 pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict};
