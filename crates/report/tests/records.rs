@@ -4,8 +4,8 @@ mod sample;
 mod schema;
 
 use pulsewright_report::record::{
-    self, Bytes, FireRecord, JudgeRecord, MistakeRecord, MistakesRecord, ModesRecord, fire, judge,
-    modes,
+    self, Bytes, FireRecord, JudgeRecord, MethodsRecord, MistakeRecord, MistakesRecord,
+    ModesRecord, fire, judge, methods, modes,
 };
 
 fn mistakes() -> MistakesRecord {
@@ -43,6 +43,25 @@ fn the_record_of_modes() {
 }
 
 #[test]
+fn the_record_of_methods() {
+    insta::assert_snapshot!(record::text(&methods(
+        &sample::methods(),
+        &sample::origin()
+    )));
+}
+
+/// Times differ from run to run, and a record must not.
+#[test]
+fn the_record_of_methods_holds_no_times() {
+    let timed = methods(&sample::methods(), &sample::origin());
+    let mut untimed = sample::methods();
+    for run in untimed.work.iter_mut().flat_map(|w| &mut w.runs) {
+        run.seconds = None;
+    }
+    assert_eq!(methods(&untimed, &sample::origin()), timed);
+}
+
+#[test]
 fn records_read_back_to_the_same() {
     let shot = fire(&sample::fired(), &sample::origin());
     assert_eq!(
@@ -63,6 +82,11 @@ fn records_read_back_to_the_same() {
         serde_json::from_str::<ModesRecord>(&record::text(&found)).unwrap(),
         found
     );
+    let found = methods(&sample::methods(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<MethodsRecord>(&record::text(&found)).unwrap(),
+        found
+    );
 }
 
 #[test]
@@ -79,6 +103,10 @@ fn records_fit_their_schemas() {
     schema::check(
         "pulsewright.modes-1.json",
         &record::text(&modes(&sample::modes(), &sample::origin())),
+    );
+    schema::check(
+        "pulsewright.methods-1.json",
+        &record::text(&methods(&sample::methods(), &sample::origin())),
     );
 }
 

@@ -12,6 +12,7 @@
 mod finite;
 mod fire;
 mod judge;
+mod methods;
 mod mistakes;
 mod modes;
 mod reading;
@@ -20,6 +21,7 @@ mod shot;
 pub use finite::{Finite, Ordered};
 pub use fire::{FireRecord, fire};
 pub use judge::{CaseRecord, JudgeRecord, SummaryRecord, WorstRecord, judge};
+pub use methods::{ComparedRecord, MethodRecord, MethodsRecord, RunRecord, methods};
 pub use mistakes::{Bytes, MistakeRecord, MistakesRecord};
 pub use modes::{ModeRecord, ModesRecord, TopologyRecord, modes};
 pub(crate) use reading::unit as unit_of;
