@@ -217,10 +217,29 @@ fn modes_are_listed_for_each_topology() {
 }
 
 #[test]
+fn methods_are_drawn_beside_their_table() {
+    let folder = folder();
+    let plot = folder.path().join("work.svg");
+    let path = stage(&folder, "");
+    let name = plot.to_str().unwrap();
+    let more = ["--svg", name, "--step", "1 ms", "--halvings", "3"];
+    let output = run("methods", &path, &more);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    assert!(out(&output).contains("crest: largest current through chest"));
+    assert!(out(&output).contains("factorisations"));
+    assert!(fs::read_to_string(&plot).unwrap().starts_with("<svg"));
+    let output = run("methods", &path, &["--svg", "-"]);
+    assert!(out(&output).starts_with("<svg") && out(&output).ends_with("</svg>\n"));
+    let output = run("methods", &path, &["--step", "0 s"]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(messages(&output).contains("--step 0 s: it must be above 0 s"));
+}
+
+#[test]
 fn the_same_input_gives_the_same_bytes() {
     let folder = folder();
     let path = stage(&folder, HOLDS);
-    for verb in ["fire", "judge", "modes"] {
+    for verb in ["fire", "judge", "modes", "methods"] {
         assert_eq!(
             run(verb, &path, &["--json"]).stdout,
             run(verb, &path, &["--json"]).stdout
