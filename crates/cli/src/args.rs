@@ -13,7 +13,7 @@ use std::path::PathBuf;
     version,
     about = "Judges the pulse of a capacitor-discharge circuit against its requirements",
     long_about = LONG_ABOUT,
-    after_help = "example: pulsewright judge stage.shot\nmanual:  pulsewright manual",
+    after_help = "example: pulsewright judge stage.shot    manual: pulsewright manual",
     after_long_help = EXIT_CODES_AND_CAUTIONS,
     disable_help_subcommand = true,
     subcommand_value_name = "VERB",
@@ -129,6 +129,49 @@ pub enum Verb {
         #[arg(long)]
         json: bool,
     },
+    /// Find the natural frequencies in each topology that a shot passes through
+    #[command(
+        long_about = MODES,
+        after_help = "example:\n  pulsewright modes stage.shot --set load=150ohm"
+    )]
+    Modes {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        #[command(flatten)]
+        case: Case,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+    },
+    /// Compare the integrators: error of each reading against the size of the step
+    #[command(
+        long_about = METHODS,
+        after_help = "example:\n  pulsewright methods stage.shot --svg work.svg"
+    )]
+    Methods {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        #[command(flatten)]
+        case: Case,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+        /// Draw the errors against the steps into a file; `-` is standard output, in place of tables
+        #[arg(long, value_name = "PATH")]
+        svg: Option<PathBuf>,
+        /// The largest step (`100us`); about a hundredth of the span where none is given
+        #[arg(long, value_name = "TIME")]
+        step: Option<String>,
+        /// How often the step is halved
+        #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..=20))]
+        halvings: Option<u32>,
+    },
     /// Print the channels as CSV, at the run's own steps or evenly
     #[command(after_help = "example:\n  pulsewright waveform stage.shot --every 10us -o pulse.csv")]
     Waveform {
@@ -167,6 +210,41 @@ const LONG_ABOUT: &str = "Judges the pulse of a capacitor-discharge circuit agai
 
 Reads a netlist: the circuit, its firing sequence, readings and claims, in one text file. Fires it, bounds the numerical \
 error of every reading, and answers each claim with holds, fails or undecided.";
+
+/// The page of `modes`.
+const MODES: &str = "Find the natural frequencies in each topology that a shot passes through
+
+Fires one shot. For each state of the switches and diodes on its way, from one instant to another, it lists how the \
+circuit moves when it is left to itself, slowest first:
+
+  underdamped        a pair that rings and dies away
+  critically damped  a pair on the edge of ringing
+  overdamped         one of the two decays of a pair that is damped more than that
+  decays             dies away by itself, as a capacitor into a resistor does
+  undamped           rings for ever: nothing in it takes energy
+  holds              stays: a charge that has no way to flow off, a current that nothing brakes
+  grows              which takes a controlled source
+
+The time constant is for a factor of e, the frequency is that of the damped ringing, and the damping is the ratio to \
+critical. The last column tells which parts hold the energy of the mode, in the mean over a cycle; inductors that are \
+coupled share what they hold in common evenly. A capacitor whose voltage the others of its loop give, and an inductor \
+whose current the others of its cut give, bring no mode.
+
+The natural frequency itself is minus one over the time constant, plus and minus j times 2 pi times the frequency; the \
+record (--json) has both parts, in 1/s and rad/s.";
+
+/// The page of `methods`.
+const METHODS: &str = "Compare the integrators: error of each reading against the size of the step
+
+Runs backward Euler and the trapezoidal rule with steps of one size, cut short only at events, and halves the step \
+again and again (6 times, or --halvings). For every named reading and every claim's reading it lists how far each run \
+is off the reference, and the order that is observed: how many powers of two the error falls by when the step is \
+halved. `<` stands before an error that the reference is too uncertain to tell. The reference is the netlist's own \
+answer on ever finer meshes of chosen steps, with its bound.
+
+The table ends with the steps, factorisations and the time of each run; the record (--json) has no times, since they \
+differ from run to run. The largest step is a round one of about a hundredth of the span, or eight times the \
+netlist's `time step`, or --step. The plot (--svg) shows error over scale against steps, both in logarithms.";
 
 /// What `--help` says last.
 const EXIT_CODES_AND_CAUTIONS: &str = "examples:

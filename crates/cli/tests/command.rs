@@ -196,10 +196,50 @@ fn a_record_names_its_input_and_holds_the_readings() {
 }
 
 #[test]
+fn modes_are_listed_for_each_topology() {
+    let folder = folder();
+    let path = stage(&folder, "cases load = 25 ohm, 100 ohm");
+    let output = run("modes", &path, &["--json", "--case", "2"]);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    let record = record(&output);
+    assert_eq!(record["record"], "pulsewright.modes/1");
+    let [open, closed] = [0, 1].map(|k| &record["topologies"][k]);
+    assert_eq!(open["states"]["fire"], "open");
+    assert_eq!(open["modes"][0]["kind"], "holds");
+    assert_eq!(
+        (&closed["from"], &closed["to"]),
+        (&1e-6.into(), &0.08.into())
+    );
+    assert_eq!(closed["modes"][0]["kind"], "decays");
+    let tau = closed["modes"][0]["time_constant"].as_f64().unwrap();
+    assert!((tau - 3.2e-3).abs() < 1e-15, "{tau}");
+    assert_eq!(closed["modes"][0]["energy"]["bank"], 1.0);
+}
+
+#[test]
+fn methods_are_drawn_beside_their_table() {
+    let folder = folder();
+    let plot = folder.path().join("work.svg");
+    let path = stage(&folder, "");
+    let name = plot.to_str().unwrap();
+    let more = ["--svg", name, "--step", "1 ms", "--halvings", "3"];
+    let output = run("methods", &path, &more);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    assert!(out(&output).contains("crest: largest current through chest"));
+    assert!(out(&output).contains("factorisations"));
+    assert!(fs::read_to_string(&plot).unwrap().starts_with("<svg"));
+    let output = run("methods", &path, &["--svg", "-"]);
+    assert!(out(&output).starts_with("<svg") && out(&output).ends_with("</svg>\n"));
+    let output = run("methods", &path, &["--step", "0 s"]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(messages(&output).contains("--step 0 s: it must be above 0 s"));
+}
+
+#[test]
 fn the_same_input_gives_the_same_bytes() {
     let folder = folder();
     let path = stage(&folder, HOLDS);
-    for verb in ["fire", "judge"] {
+    for verb in ["fire", "judge", "modes", "methods"] {
         assert_eq!(
             run(verb, &path, &["--json"]).stdout,
             run(verb, &path, &["--json"]).stdout

@@ -44,6 +44,8 @@ fn records_fit_their_schemas() {
         for (verb, file) in [
             ("fire", "pulsewright.fire-1.json"),
             ("judge", "pulsewright.judge-1.json"),
+            ("modes", "pulsewright.modes-1.json"),
+            ("methods", "pulsewright.methods-1.json"),
         ] {
             let output = run(verb, &path, &["--json"]);
             if output.status.code() == Some(2) {
@@ -58,7 +60,7 @@ fn records_fit_their_schemas() {
 #[test]
 fn pages_fit_80_columns() {
     for path in examples() {
-        for verb in ["list", "fire", "judge"] {
+        for verb in ["list", "fire", "judge", "modes", "methods"] {
             for line in text(run(verb, &path, &[])).lines() {
                 assert!(
                     line.chars().count() <= 80,

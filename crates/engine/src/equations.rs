@@ -109,6 +109,8 @@ pub struct Equations {
     /// Forms of the controlling quantities of each source.
     control: Vec<Form>,
     factors: Vec<(u64, Factor)>,
+    /// How often M(θ) was factorised.
+    pub factorisations: u64,
     /// Potential at which each island's node is held, V.
     pub held: Vec<f64>,
     /// Magnitudes of the natural frequencies, 1/s, once asked for.
@@ -171,6 +173,7 @@ impl Equations {
             loop_of,
             control,
             factors: Vec::new(),
+            factorisations: 0,
             held,
             rates: None,
             noted: false,
@@ -429,6 +432,7 @@ impl Equations {
             &self.assemble(net, theta),
         )
         .map_err(|s| s.column.unwrap_or(usize::MAX))?;
+        self.factorisations += 1;
         let kept = if net.unknowns() > LARGE {
             FACTORS_KEPT_LARGE
         } else {

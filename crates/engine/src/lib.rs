@@ -13,6 +13,7 @@ mod jump;
 pub mod linear;
 mod march;
 mod meter;
+pub mod modes;
 pub mod network;
 pub mod rates;
 pub mod record;
@@ -29,6 +30,7 @@ pub mod topology;
 mod watch;
 
 pub use failure::Failure;
+pub use modes::modes;
 pub use record::{heat_ports, ports};
 pub use shot::{Event, Jump, Mesh, Request, Shot, Stretch};
 pub use survey::survey;

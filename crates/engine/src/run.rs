@@ -166,6 +166,7 @@ impl<'a> Run<'a> {
             (NOISE * self.volts).max(self.rounding.volts(self.amperes)),
             (NOISE * self.amperes).max(self.rounding.amperes(self.volts)),
         ];
+        self.shot.factorisations = self.shelf.values().map(|e| e.factorisations).sum();
         if !self.shot.smallest_step.is_finite() {
             self.shot.smallest_step = 0.0;
         }

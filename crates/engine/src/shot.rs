@@ -75,6 +75,8 @@ pub struct Shot {
     pub balance: Balance,
     /// Accepted steps.
     pub steps: u64,
+    /// Factorisations of the equations of all topologies.
+    pub factorisations: u64,
     /// Smallest accepted step, s.
     pub smallest_step: f64,
     /// Largest accepted step, s.

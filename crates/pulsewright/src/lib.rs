@@ -16,7 +16,9 @@ pub use pulsewright_study as study;
 pub use pulsewright_circuit::{Circuit, Draft, LetValue};
 pub use pulsewright_netlist::Mistakes;
 pub use pulsewright_study::outcome::{Fired, Found, Judged, Verdict};
-pub use pulsewright_study::{Options, StudyError, fire, judge};
+pub use pulsewright_study::{
+    Methods, Modes, Options, Rungs, StudyError, fire, judge, methods, modes,
+};
 
 /// Reads a netlist into a circuit.
 ///

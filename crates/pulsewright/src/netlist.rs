@@ -7,7 +7,7 @@ use pulsewright_circuit::{Circuit, LetValue, Lets};
 use pulsewright_netlist::{Mistakes, Source};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{Fired, Judged, Set, SetValue};
-use pulsewright_study::{Options, StudyError};
+use pulsewright_study::{Methods, Modes, Options, Rungs, StudyError};
 use sha2::{Digest, Sha256};
 
 /// Let-values given from outside, by name.
@@ -187,6 +187,42 @@ impl Netlist {
     /// [`Error`].
     pub fn judge(&self, options: &Options<'_>) -> Result<Judged, Error> {
         pulsewright_study::judge(self.circuit(), options).map_err(|e| self.error(e))
+    }
+
+    /// Finds the natural frequencies in every topology that one case passes through. What is held
+    /// is said in `options`, as for [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// 50 ohm discharge 32 uF with a time constant of 1.6 ms:
+    ///
+    /// ```
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "capacitor bank from top to ground = 32 uF, charged to 5 kV
+    ///      resistor chest from top to ground = 50 ohm
+    ///      span 10 ms",
+    /// )?;
+    /// let found = netlist.modes(&pulsewright::Options::default())?;
+    /// let tau = found.topologies[0].modes[0].time_constant();
+    /// assert!(tau.is_some_and(|tau| (tau - 1.6e-3).abs() < 1e-15));
+    /// # Ok::<(), Box<dyn std::error::Error>>(())
+    /// ```
+    pub fn modes(&self, options: &Options<'_>) -> Result<Modes, Error> {
+        pulsewright_study::modes(self.circuit(), options).map_err(|e| self.error(e))
+    }
+
+    /// Compares the integrators on one case over a ladder of steps. What is held is said in
+    /// `options`, as for [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    pub fn methods(&self, options: &Options<'_>, rungs: &Rungs<'_>) -> Result<Methods, Error> {
+        pulsewright_study::methods(self.circuit(), options, rungs).map_err(|e| self.error(e))
     }
 
     /// Options that hold the let-values that this netlist was read with.

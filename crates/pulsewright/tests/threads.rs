@@ -1,6 +1,8 @@
 //! Every public result and input may be sent to and shared between threads.
 
-use pulsewright::{Circuit, Draft, Error, Fired, Judged, LetValue, Mistakes, Netlist};
+use pulsewright::{
+    Circuit, Draft, Error, Fired, Judged, LetValue, Methods, Mistakes, Modes, Netlist,
+};
 
 fn shared<T: Send + Sync>() {}
 
@@ -12,7 +14,9 @@ fn results_and_inputs_are_send_and_sync() {
     shared::<Fired>();
     shared::<Judged>();
     shared::<LetValue>();
+    shared::<Methods>();
     shared::<Mistakes>();
+    shared::<Modes>();
     shared::<Netlist>();
     shared::<pulsewright::StudyError>();
     shared::<pulsewright::Options<'static>>();
@@ -21,5 +25,7 @@ fn results_and_inputs_are_send_and_sync() {
     shared::<pulsewright::engine::Failure>();
     shared::<pulsewright::report::record::FireRecord>();
     shared::<pulsewright::report::record::JudgeRecord>();
+    shared::<pulsewright::report::record::MethodsRecord>();
     shared::<pulsewright::report::record::MistakesRecord>();
+    shared::<pulsewright::report::record::ModesRecord>();
 }

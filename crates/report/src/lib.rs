@@ -1,9 +1,10 @@
-//! What people and programs read of a result: records, tables, waveforms.
+//! What people and programs read of a result: records, tables, waveforms, plots.
 //!
 //! ```text
-//! Fired, Judged ──> record    JSON, one schema a kind and number
-//!               ──> table     text that fits the terminal
-//!               ──> waveform  CSV
+//! Fired, Judged, ──> record          JSON, one schema a kind and number
+//! Modes, Methods ──> table           text that fits the terminal
+//!                ──> waveform        CSV
+//!                ──> work_precision  SVG
 //! ```
 //!
 //! Only this crate knows what a record or a table looks like, and it computes nothing: every
@@ -15,6 +16,7 @@ pub mod number;
 pub mod record;
 pub mod table;
 pub mod waveform;
+pub mod work_precision;
 
 pub use look::Look;
 pub use record::Origin;

@@ -251,7 +251,7 @@ fn prefix(exponent: i32) -> Option<&'static str> {
 }
 
 /// A whole number as an exponent.
-fn raised(exponent: i32) -> String {
+pub(crate) fn raised(exponent: i32) -> String {
     const DIGITS: [char; 10] = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
     let digit = |c: char| {
         c.to_digit(10)

@@ -4,7 +4,8 @@ mod sample;
 mod schema;
 
 use pulsewright_report::record::{
-    self, Bytes, FireRecord, JudgeRecord, MistakeRecord, MistakesRecord, fire, judge,
+    self, Bytes, FireRecord, JudgeRecord, MethodsRecord, MistakeRecord, MistakesRecord,
+    ModesRecord, fire, judge, methods, modes,
 };
 
 fn mistakes() -> MistakesRecord {
@@ -37,6 +38,30 @@ fn the_record_of_mistakes() {
 }
 
 #[test]
+fn the_record_of_modes() {
+    insta::assert_snapshot!(record::text(&modes(&sample::modes(), &sample::origin())));
+}
+
+#[test]
+fn the_record_of_methods() {
+    insta::assert_snapshot!(record::text(&methods(
+        &sample::methods(),
+        &sample::origin()
+    )));
+}
+
+/// Times differ from run to run, and a record must not.
+#[test]
+fn the_record_of_methods_holds_no_times() {
+    let timed = methods(&sample::methods(), &sample::origin());
+    let mut untimed = sample::methods();
+    for run in untimed.work.iter_mut().flat_map(|w| &mut w.runs) {
+        run.seconds = None;
+    }
+    assert_eq!(methods(&untimed, &sample::origin()), timed);
+}
+
+#[test]
 fn records_read_back_to_the_same() {
     let shot = fire(&sample::fired(), &sample::origin());
     assert_eq!(
@@ -52,6 +77,16 @@ fn records_read_back_to_the_same() {
         serde_json::from_str::<MistakesRecord>(&record::text(&mistakes())).unwrap(),
         mistakes()
     );
+    let found = modes(&sample::modes(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<ModesRecord>(&record::text(&found)).unwrap(),
+        found
+    );
+    let found = methods(&sample::methods(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<MethodsRecord>(&record::text(&found)).unwrap(),
+        found
+    );
 }
 
 #[test]
@@ -65,6 +100,14 @@ fn records_fit_their_schemas() {
         &record::text(&judge(&sample::judged(), &sample::origin())),
     );
     schema::check("pulsewright.mistakes-1.json", &record::text(&mistakes()));
+    schema::check(
+        "pulsewright.modes-1.json",
+        &record::text(&modes(&sample::modes(), &sample::origin())),
+    );
+    schema::check(
+        "pulsewright.methods-1.json",
+        &record::text(&methods(&sample::methods(), &sample::origin())),
+    );
 }
 
 #[test]

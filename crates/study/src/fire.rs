@@ -280,7 +280,8 @@ fn named(plan: &Plan<'_>, ladder: &Ladder) -> Vec<ReadingResult> {
     circuit.draft().readings.iter().filter_map(result).collect()
 }
 
-fn settings(set: &[(String, LetValue)]) -> Set {
+/// Let-values as results show them.
+pub(crate) fn settings(set: &[(String, LetValue)]) -> Set {
     let value = |v: &LetValue| match v {
         LetValue::Number { value, dimension } => SetValue::Number {
             value: *value,

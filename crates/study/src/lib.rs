@@ -4,8 +4,8 @@
 //! Circuit -> plan -> ladder of meshes -> readings -> bounds -> claims -> Fired, Judged
 //! ```
 //!
-//! [`fire`] fires one case and reads it; [`judge`] does so for every case. Both return values
-//! that hold all a report shows. This crate knows no text format and no equations: it reads
+//! [`fire`] fires one case and reads it; [`judge`] does so for every case; [`modes()`] tells how
+//! fast the topologies of a case move; [`methods()`] compares the integrators. All return values that hold all a report shows. This crate knows no text format and no equations: it reads
 //! waveforms ([`waveform`]), measures ([`readings`]), compares meshes ([`bounds`]) and judges
 //! ([`claims`]).
 
@@ -19,6 +19,8 @@ mod events;
 mod fire;
 mod hazards;
 mod ladder;
+mod methods;
+mod modes;
 mod opinion;
 mod options;
 pub mod outcome;
@@ -32,6 +34,8 @@ pub mod waveform;
 pub use cases::judge;
 pub use error::StudyError;
 pub use fire::fire;
+pub use methods::{Compared, MethodErrors, MethodWork, Methods, RunError, Rungs, Work, methods};
+pub use modes::{Modes, TopologyModes, modes};
 pub use options::{Hook, Options, Progress};
 pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict};
 pub use remarks::CODES;

@@ -5,6 +5,8 @@ mod fire;
 mod judge;
 mod list;
 mod manual;
+mod methods;
+mod modes;
 mod neaten;
 mod watch;
 mod waveform;
@@ -25,6 +27,8 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Check { json: true, .. }
             | Verb::Fire { json: true, .. }
             | Verb::Judge { json: true, .. }
+            | Verb::Modes { json: true, .. }
+            | Verb::Methods { json: true, .. }
     );
     let done = match verb {
         Verb::Check {
@@ -55,6 +59,32 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             settings,
             json,
         } => judge::judge(&file, &settings.set, json, shell),
+        Verb::Modes {
+            file,
+            settings,
+            case,
+            json,
+        } => modes::modes(&file, &settings.set, case.case, json, shell),
+        Verb::Methods {
+            file,
+            settings,
+            case,
+            json,
+            svg,
+            step,
+            halvings,
+        } => methods::methods(
+            &file,
+            &settings.set,
+            case.case,
+            methods::Form {
+                json,
+                svg: svg.as_deref(),
+                step: step.as_deref(),
+                halvings,
+            },
+            shell,
+        ),
         Verb::Waveform {
             file,
             settings,
@@ -69,11 +99,16 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
 
 /// Hands data over.
 fn deliver(shell: &Shell, bytes: &[u8]) -> Result<(), Trouble> {
+    deliver_to(&shell.target, shell, bytes)
+}
+
+/// Hands data over to a target of their own.
+fn deliver_to(target: &Target, shell: &Shell, bytes: &[u8]) -> Result<(), Trouble> {
     if shell.stop.came().is_some() {
         return Err(Trouble::Stopped(None));
     }
-    shell.target.write(bytes).map_err(|e| {
-        let place = match &shell.target {
+    target.write(bytes).map_err(|e| {
+        let place = match target {
             Target::Standard => "standard output".to_owned(),
             Target::File(path) => path.display().to_string(),
         };

@@ -12,6 +12,8 @@ mod grid;
 mod hazards;
 mod judge;
 mod list;
+mod methods;
+mod modes;
 mod opinion;
 mod stress;
 
@@ -20,6 +22,8 @@ pub use grid::{Align, Cell, Grid};
 pub use hazards::CAUTIONS;
 pub use judge::judge;
 pub use list::list;
+pub use methods::methods;
+pub use modes::modes;
 
 use crate::look::{Look, Tone, paragraph};
 use crate::number;

@@ -1,11 +1,15 @@
 //! A hand-made result with one of everything, so that pages and records need no run.
 
 use pulsewright_circuit::{Dimension, Span};
+use pulsewright_engine::modes::{Kind, NaturalMode};
 use pulsewright_engine::{Event, Shot};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{
     Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Difference, Extreme, Fired, Found,
     Hazard, Judged, ReadingResult, Remark, SecondOpinion, Set, SetValue, Stress, Verdict,
+};
+use pulsewright_study::{
+    Compared, MethodErrors, MethodWork, Methods, Modes, RunError, TopologyModes, Work,
 };
 
 /// The text that the remark's span is in.
@@ -224,6 +228,162 @@ pub fn fired() -> Fired {
         }],
         parts: vec!["bank".to_owned(), "fire".to_owned()],
         changes: vec!["closes".to_owned(), "opens".to_owned()],
+    }
+}
+
+fn mode(real: f64, imaginary: f64, kind: Kind, energy: &[(usize, f64)]) -> NaturalMode {
+    let pair = imaginary > 0.0;
+    NaturalMode {
+        real,
+        imaginary,
+        count: if pair { 2 } else { 1 },
+        damping_ratio: pair.then(|| -real / real.hypot(imaginary)),
+        kind,
+        energy: energy.to_vec(),
+        electric: energy.iter().filter(|e| e.0 == 0).map(|e| e.1).sum(),
+    }
+}
+
+/// A bank that is held, rings, and is held again, with a slow leak and five parts in one mode.
+pub fn modes() -> Modes {
+    let open = |from, to| TopologyModes {
+        from,
+        to,
+        states: vec![("fire".to_owned(), "open".to_owned())],
+        modes: vec![mode(0.0, 0.0, Kind::Holds, &[(0, 0.75), (1, 0.25)])],
+    };
+    let many = [
+        (0, 0.5),
+        (1, 0.2),
+        (2, 0.15),
+        (3, 0.1),
+        (4, 0.049),
+        (5, 0.001),
+    ];
+    let closed = TopologyModes {
+        from: 1e-6,
+        to: 25.312_4e-3,
+        states: vec![("fire".to_owned(), "closed".to_owned())],
+        modes: vec![
+            mode(0.0, 0.0, Kind::Holds, &[(2, 1.0)]),
+            mode(-312.5, 0.0, Kind::Decays, &[(1, 1.0)]),
+            mode(-600.0, 800.0, Kind::Underdamped, &many),
+            mode(0.0, 6e6, Kind::Undamped, &[(0, 0.5), (2, 0.5)]),
+        ],
+    };
+    Modes {
+        set: load(50.0),
+        topologies: vec![open(0.0, 1e-6), closed, open(25.312_4e-3, 30e-3)],
+        parts: ["bank", "snub", "choke", "stray", "cable", "probe"]
+            .map(str::to_owned)
+            .to_vec(),
+        defaults: vec!["start at rest".to_owned()],
+        method: "trapezoidal rule".to_owned(),
+        span: 30e-3,
+        steps: 1234,
+        smallest_step: 12e-9,
+        largest_step: 34e-6,
+    }
+}
+
+/// Errors of an order over three steps, those below 1e-9 not told.
+fn errors(method: &str, order: i32, reference: f64, first: f64) -> MethodErrors {
+    let run = |k: i32| {
+        let error = first * 0.5_f64.powi(order * k);
+        RunError {
+            value: Some(reference + error),
+            error: Some(error),
+            resolved: error > 1e-9,
+        }
+    };
+    MethodErrors {
+        method: method.to_owned(),
+        order: (first > 1e-9).then(|| f64::from(order)),
+        runs: (0..3).map(run).collect(),
+    }
+}
+
+fn compared(name: &str, text: &str, found: Found, dimension: Dimension) -> Compared {
+    let methods = match &found {
+        Found::Value { value, .. } => vec![
+            errors("backward Euler", 1, *value, 0.08 * value),
+            errors("trapezoidal rule", 2, *value, 1e-3 * value),
+        ],
+        _ => ["backward Euler", "trapezoidal rule"]
+            .map(|method| MethodErrors {
+                method: method.to_owned(),
+                order: None,
+                runs: vec![RunError::default(); 3],
+            })
+            .to_vec(),
+    };
+    let scale = match found {
+        Found::Value { value, .. } => value,
+        _ => 0.0,
+    };
+    Compared {
+        name: name.to_owned(),
+        text: text.to_owned(),
+        reference: answer(found, dimension),
+        reference_by: "trapezoidal rule, finest meshes extrapolated".to_owned(),
+        scale,
+        methods,
+    }
+}
+
+/// Two methods on four readings: one seen, one too small to see, one in both, one absent.
+pub fn methods() -> Methods {
+    let work = |method: &str, seconds: Option<f64>| MethodWork {
+        method: method.to_owned(),
+        runs: (0..3)
+            .map(|k| Work {
+                step: 1e-4 * 0.5_f64.powi(k),
+                steps: 300 * 2_u64.pow(k.unsigned_abs()),
+                factorisations: 5,
+                seconds,
+            })
+            .collect(),
+        ended: None,
+    };
+    let tiny = compared(
+        "tiny",
+        "final voltage across bank",
+        value(2e-9, 1e-9),
+        Dimension::VOLT,
+    );
+    let mut dose = compared(
+        "dose",
+        "energy into chest",
+        value(300.0, 1e-9),
+        Dimension::JOULE,
+    );
+    if let Some(trapezoidal) = dose.methods.get_mut(1) {
+        *trapezoidal = errors("trapezoidal rule", 2, 300.0, 1e-12);
+    }
+    Methods {
+        set: load(50.0),
+        span: 30e-3,
+        defaults: vec!["start at rest".to_owned()],
+        readings: vec![
+            compared(
+                "crest",
+                "largest current through chest",
+                value(50.0, 1e-9),
+                Dimension::AMPERE,
+            ),
+            dose,
+            tiny,
+            compared(
+                "brief",
+                "width of voltage across chest at 10 %",
+                Found::Absent("it is not over at the end of the span".to_owned()),
+                Dimension::SECOND,
+            ),
+        ],
+        work: vec![
+            work("backward Euler", Some(1.5e-3)),
+            work("trapezoidal rule", Some(2.5e-3)),
+        ],
     }
 }
 
