@@ -2,17 +2,21 @@
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a test may end by panic")]
 
+use proptest::prelude::*;
 use pulsewright_circuit::draft::Method;
 use pulsewright_circuit::formula::{Formula, Probe};
 use pulsewright_circuit::setup::{
     Element, Limits, Ohms, SetAction, SetControl, SetPart, SetTrigger, Setup,
 };
+use pulsewright_engine::equations::Equations;
 use pulsewright_engine::modes::{Kind, NaturalMode, Passage, modes};
-use pulsewright_engine::{Mesh, Request, fire};
+use pulsewright_engine::network::Network;
+use pulsewright_engine::rates::rates;
+use pulsewright_engine::{Mesh, Request, Shot, Stretch, fire};
 
 /// Parts between nodes 0 (ground) to 4, followed for 1 ms.
-fn passages(parts: Vec<(&str, Element)>) -> Vec<Passage> {
-    let setup = Setup {
+fn setup(parts: Vec<(&str, Element)>) -> Setup {
+    Setup {
         nodes: ["ground", "a", "b", "c", "d"].map(String::from).to_vec(),
         parts: parts
             .into_iter()
@@ -27,7 +31,11 @@ fn passages(parts: Vec<(&str, Element)>) -> Vec<Passage> {
         error: 1e-6,
         step: None,
         limits: Limits::default(),
-    };
+    }
+}
+
+fn passages(parts: Vec<(&str, Element)>) -> Vec<Passage> {
+    let setup = setup(parts);
     let request = Request::new(Vec::new(), Mesh::Chosen { tolerance: 1e-3 });
     modes(&setup, &fire(&setup, &request).unwrap()).unwrap()
 }
@@ -366,4 +374,73 @@ fn a_controlled_source_may_make_a_mode_grow() {
 #[test]
 fn a_circuit_that_stores_nothing_has_no_modes() {
     assert!(only(vec![("load", resistor(1, 0, 50.0))]).is_empty());
+}
+
+/// Parts whose values are too far apart for numbers are refused, not crashed on.
+#[test]
+fn values_beyond_numbers_are_refused() {
+    let setup = setup(vec![
+        ("bank", capacitor(1, 0, 1e-300)),
+        ("load", resistor(1, 0, 1e-9)),
+    ]);
+    let shot = shot_of_one_topology(&setup);
+    assert!(modes(&setup, &shot).is_err());
+}
+
+/// A shot of which nothing but its only topology is known.
+fn shot_of_one_topology(setup: &Setup) -> Shot {
+    let mut stretch = Stretch::default();
+    stretch.times = vec![0.0, setup.span];
+    stretch.states = vec![0; setup.parts.len()];
+    Shot {
+        stretches: vec![stretch],
+        ..Shot::default()
+    }
+}
+
+fn part() -> impl Strategy<Value = Element> {
+    let nodes = (0..5_usize, 0..5_usize).prop_filter("apart", |(a, b)| a != b);
+    let value = (-1.0..1.0_f64).prop_map(|x| 10_f64.powf(x));
+    (0..3, nodes, value).prop_map(|(kind, (a, b), x)| match kind {
+        0 => resistor(a, b, x),
+        1 => capacitor(a, b, x),
+        _ => inductor(a, b, x),
+    })
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig { failure_persistence: None, ..ProptestConfig::with_cases(400) })]
+
+    /// Against the eigenvalues of the matrix of all states, dependent ones included: those that are
+    /// not zero are the same. Rounding parts a double one by its root.
+    #[test]
+    fn random_circuits_have_the_frequencies_of_the_whole_matrix(
+        elements in prop::collection::vec(part(), 1..9)
+    ) {
+        let setup = setup(elements.into_iter().map(|e| ("part", e)).collect());
+        let found = modes(&setup, &shot_of_one_topology(&setup)).unwrap().remove(0).modes;
+        for mode in &found {
+            let sum: f64 = mode.energy.iter().map(|e| e.1).sum();
+            prop_assert!((sum - 1.0).abs() < 1e-8, "{mode:?}");
+            prop_assert!(mode.real <= 0.0, "{mode:?}");
+            prop_assert!(mode.imaginary == 0.0 || (mode.electric - 0.5).abs() < 1e-6, "{mode:?}");
+        }
+        let net = Network::new(&setup).unwrap();
+        let mut equations = Equations::new(&net, &setup, &vec![0; setup.parts.len()], 0.0).unwrap();
+        let whole = rates(&mut equations, &net, &setup).unwrap();
+        let most = whole.iter().fold(1.0_f64, |a, b| a.max(*b));
+        let mut whole: Vec<f64> = whole.iter().copied().filter(|r| *r > 1e-6 * most).collect();
+        let mut own: Vec<f64> = found
+            .iter()
+            .filter(|m| m.kind != Kind::Holds)
+            .flat_map(|m| vec![m.real.hypot(m.imaginary); m.count as usize])
+            .filter(|r| *r > 1e-6 * most)
+            .collect();
+        whole.sort_by(f64::total_cmp);
+        own.sort_by(f64::total_cmp);
+        prop_assert_eq!(whole.len(), own.len());
+        for (a, b) in whole.iter().zip(&own) {
+            prop_assert!((a - b).abs() < 1e-6 * most, "{} for {}", b, a);
+        }
+    }
 }

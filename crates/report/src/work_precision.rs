@@ -247,7 +247,7 @@ impl<'a> Panel<'a> {
 
     fn draw(&self, out: &mut String, axes: &Axes, frame: &Frame) {
         let title = format!("{}: {}", self.reading.name, self.reading.text);
-        let title = shortened(&title, frame.right + ORDERS - frame.left);
+        let title = shortened(&title, frame.right + ORDERS - 16.0 - frame.left);
         text(
             out,
             frame.left,

@@ -36,6 +36,14 @@ fn the_page_of_methods() {
 }
 
 #[test]
+fn without_readings_there_is_nothing_to_compare() {
+    let mut methods = sample::methods();
+    methods.readings.clear();
+    let page = table::methods(&methods, &sample::origin(), look(80));
+    assert!(page.contains("nothing to compare"), "{page}");
+}
+
+#[test]
 fn pages_fit_their_width() {
     for width in [48, 60, 80, 120] {
         let pages = [

@@ -330,7 +330,8 @@ impl Compared {
 }
 
 /// The order seen on the finest steps: the median of the last three that errors which stand out
-/// give. `runs` are steps with what came of them.
+/// give; none where of many runs only two do, since a start that is damped on coarse steps alone
+/// may be all they show. `runs` are steps with what came of them.
 fn order(runs: &[(f64, RunError)]) -> Option<f64> {
     let told = |(step, run): &(f64, RunError)| Some((*step, run.error.filter(|_| run.resolved)?));
     let of = |pair: &[(f64, RunError)]| {
@@ -338,6 +339,9 @@ fn order(runs: &[(f64, RunError)]) -> Option<f64> {
         Some((first.1 / second.1).abs().ln() / (first.0 / second.0).ln())
     };
     let mut last: Vec<f64> = runs.windows(2).rev().filter_map(of).take(3).collect();
+    if last.len() < 2 && runs.len() > 2 {
+        return None;
+    }
     last.sort_by(f64::total_cmp);
     last.get(last.len() / 2).copied()
 }

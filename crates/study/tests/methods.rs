@@ -58,6 +58,23 @@ fn an_error_that_is_rounding_has_no_order() {
     assert!(trapezoidal.runs.iter().all(|r| !r.resolved));
 }
 
+/// A bank into a resistor, 2 us: the two coarsest runs begin with damped steps, the others have no
+/// error in the energy at all.
+#[test]
+fn two_errors_of_many_give_no_order() {
+    let text = "\
+capacitor bank from top to ground = 2 uF, charged to 1 V
+resistor chest from top to ground = 1 ohm
+span 1 ms
+reading all = energy into chest
+";
+    let found = compared(text, &Rungs::default());
+    let trapezoidal = &reading(&found, "all").methods[1];
+    let resolved: Vec<bool> = trapezoidal.runs.iter().map(|r| r.resolved).collect();
+    assert_eq!(resolved.iter().filter(|r| **r).count(), 2, "{resolved:?}");
+    assert_eq!(trapezoidal.order, None);
+}
+
 /// A capacitor into a resistor: one step of h multiplies the voltage by 1 / (1 + h/RC) or by
 /// (1 - h/2RC) / (1 + h/2RC), so that the error after n steps is known to the last digits.
 #[test]

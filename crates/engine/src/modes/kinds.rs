@@ -15,7 +15,7 @@
 //! ζ = 1 both vectors coincide; rounding then moves the eigenvalues by the root of what it moves
 //! the matrix by, to either side.
 
-use faer::{Mat, c64};
+use faer::{Mat, MatRef, c64};
 
 use super::matrix::Reduced;
 use super::{Kind, NaturalMode};
@@ -57,14 +57,26 @@ pub(super) fn modes(reduced: &Reduced, net: &Network) -> Option<Vec<NaturalMode>
         rounding,
         passive: !reduced.controlled,
     };
-    let mut roots = roots(reduced)?;
-    roots.sort_by(|a, b| a.value.size().total_cmp(&b.value.size()));
+    let eigen = reduced.matrix.eigen().ok()?;
+    let values = eigen.S().column_vector();
+    let mut order: Vec<(usize, Complex)> = (0..n)
+        .map(|k| (k, values[k]))
+        .map(|(k, c)| (k, Complex { re: c.re, im: c.im }))
+        .collect();
+    if !order.iter().all(|(_, value)| value.size().is_finite()) {
+        return None;
+    }
+    order.sort_by(|a, b| a.1.size().total_cmp(&b.1.size()));
+    // Rounding may make a pair of two zeros: they are taken out before pairs are.
     let held = if reduced.controlled {
-        roots.iter().filter(|r| r.value.size() <= rounding).count()
+        order.partition_point(|(_, value)| value.size() <= rounding)
     } else {
         reduced.held.min(n)
     };
-    let moving = roots.split_off(held);
+    let upper = order.split_off(held).into_iter().filter(|r| r.1.im >= 0.0);
+    let moving: Vec<Root> = upper
+        .map(|(k, value)| root(reduced, eigen.U(), k, value))
+        .collect::<Option<_>>()?;
     let mut all: Vec<NaturalMode> = kernel(reduced, held)?
         .iter()
         .map(|v| teller.holding(v))
@@ -104,40 +116,29 @@ impl Root {
     }
 }
 
-/// All eigenvalues of the upper half plane and the real axis, with unit vectors.
-fn roots(reduced: &Reduced) -> Option<Vec<Root>> {
-    let eigen = reduced.matrix.eigen().ok()?;
-    let (u, s) = (eigen.U(), eigen.S().column_vector());
-    let n = reduced.matrix.nrows();
-    let mut all: Vec<Root> = Vec::new();
-    for k in (0..n).filter(|&k| s[k].im >= 0.0) {
-        let mut vector: Vec<c64> = (0..n).map(|i| u[(i, k)]).collect();
-        let square: f64 = vector.iter().map(|c| c.re * c.re + c.im * c.im).sum();
-        if !square.is_normal() {
-            vector = null_vector(&reduced.matrix, s[k])?;
-        }
-        let value = Complex {
-            re: s[k].re,
-            im: s[k].im,
-        };
-        if !value.size().is_finite() {
-            return None;
-        }
-        all.push(Root {
-            value,
-            vector: spread(&reduced.basis, &vector),
-        });
+/// An eigenvalue with its unit vector, column `k` of `u` where that could be found.
+fn root(reduced: &Reduced, u: MatRef<'_, c64>, k: usize, value: Complex) -> Option<Root> {
+    let mut vector: Vec<c64> = (0..u.nrows()).map(|i| u[(i, k)]).collect();
+    let square: f64 = vector.iter().map(|c| c.re * c.re + c.im * c.im).sum();
+    if !square.is_normal() {
+        vector = null_vector(&reduced.matrix, value)?;
     }
-    Some(all)
+    Some(Root {
+        value,
+        vector: spread(&reduced.basis, &vector),
+    })
 }
 
 /// The vector that `A - λ` shortens most: back substitution divides by zero where an eigenvalue
 /// is double to the last bit.
-fn null_vector(a: &Mat<f64>, value: c64) -> Option<Vec<c64>> {
+fn null_vector(a: &Mat<f64>, value: Complex) -> Option<Vec<c64>> {
     let n = a.nrows();
     let shifted = Mat::from_fn(n, n, |i, j| {
-        let own = if i == j { value } else { c64::new(0.0, 0.0) };
-        c64::new(a[(i, j)] - own.re, -own.im)
+        if i == j {
+            c64::new(a[(i, j)] - value.re, -value.im)
+        } else {
+            c64::new(a[(i, j)], 0.0)
+        }
     });
     let svd = shifted.svd().ok()?;
     Some((0..n).map(|i| svd.V()[(i, n - 1)]).collect())

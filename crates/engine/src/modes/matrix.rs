@@ -36,6 +36,13 @@ pub(super) struct Reduced {
     pub(super) controlled: bool,
 }
 
+impl Reduced {
+    /// Whether all its entries, and their squares, are finite.
+    pub(super) fn is_finite(&self) -> bool {
+        self.matrix.squared_norm_l2().is_finite() && self.basis.squared_norm_l2().is_finite()
+    }
+}
+
 /// The state matrix of a topology.
 pub(super) fn reduced(
     equations: &mut Equations,

@@ -122,7 +122,7 @@ pub struct Passage {
 /// # Errors
 ///
 /// [`Failure::NotYet`] for more states than are solved densely, [`Failure::Singular`] where the
-/// equations have no single solution.
+/// equations have no single solution, [`Failure::NotFinite`] where values are too far apart.
 pub fn modes(setup: &Setup, shot: &Shot) -> Result<Vec<Passage>, Failure> {
     let net = Network::new(setup)?;
     let mut all: Vec<Passage> = Vec::new();
@@ -158,6 +158,12 @@ fn of_topology(
 ) -> Result<Vec<NaturalMode>, Failure> {
     let mut equations = Equations::new(net, setup, states, time)?;
     let reduced = matrix::reduced(&mut equations, net, setup)?;
+    if !reduced.is_finite() {
+        return Err(Failure::NotFinite {
+            what: "a natural frequency".to_owned(),
+            time,
+        });
+    }
     kinds::modes(&reduced, net).ok_or_else(|| Failure::Singular {
         names: Vec::new(),
         time,

@@ -40,6 +40,9 @@ pub fn methods(methods: &Methods, origin: &Origin<'_>, look: Look) -> String {
     if let Some(first) = methods.readings.first() {
         let text = format!("errors are against {}", first.reference_by);
         paragraph(&mut out, look, 0, &text, Tone::Plain);
+    } else {
+        let text = "nothing to compare: the netlist names no reading and makes no claim";
+        paragraph(&mut out, look, 0, text, Tone::Open);
     }
     for reading in &methods.readings {
         compared(&mut out, look, reading, &methods.work);
