@@ -143,6 +143,24 @@ pub enum Verb {
         #[arg(long, value_name = "TIME")]
         every: Option<String>,
     },
+    /// Draw the channels as SVG: crests, events, windows, limits of claims
+    #[command(
+        after_help = "example:\n  pulsewright chart stage.shot -o stage.svg\n  \
+                      pulsewright chart stage.shot --case 2 --between 0s 2ms -o front.svg",
+        after_long_help = CHART
+    )]
+    Chart {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        #[command(flatten)]
+        case: Case,
+        /// Show only the time from T1 to T2 (`--between 0s 20us`)
+        #[arg(long, num_args = 2, value_names = ["T1", "T2"])]
+        between: Option<Vec<String>>,
+    },
     /// Print a netlist in its canonical layout
     #[command(after_help = "example:\n  pulsewright neaten stage.shot -o stage.shot")]
     Neaten {
@@ -162,6 +180,21 @@ pub enum Verb {
     },
 }
 
+/// What `chart --help` says last.
+const CHART: &str = "\
+The channels stand in panels by quantity over one time axis, each with a colour, dashes and a marker
+of its own. Marked are:
+  the crest of each channel with value and instant
+  events, as dashed verticals with the part and what it did
+  windows of readings and claims, shaded and named under the axis
+  limits of claims on the highest, lowest or largest value of a channel, the forbidden side hatched
+The picture follows the viewer's light or dark setting, and has a description in words. The same
+input gives the same bytes.
+
+examples:
+  pulsewright chart stage.shot -o stage.svg
+  pulsewright chart stage.shot --case 2 --between 0s 2ms -o front.svg";
+
 /// What `--help` says first.
 const LONG_ABOUT: &str = "Judges the pulse of a capacitor-discharge circuit against its requirements.
 
@@ -174,6 +207,7 @@ const EXIT_CODES_AND_CAUTIONS: &str = "examples:
   pulsewright fire stage.shot --set load=75ohm
   pulsewright judge stage.shot --json -o stage.json
   pulsewright waveform stage.shot --every 10us -o pulse.csv
+  pulsewright chart stage.shot -o pulse.svg
   pulsewright manual claim
 
 exit codes:

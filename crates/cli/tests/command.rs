@@ -433,3 +433,42 @@ fn a_signal_ends_a_run_with_its_code() {
         assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 1);
     }
 }
+
+#[test]
+fn chart_draws_the_channels_the_same_each_time() {
+    let folder = folder();
+    let path = stage(
+        &folder,
+        "claim top: largest current through chest is at most 120 A",
+    );
+    let target = folder.path().join("stage.svg");
+    let output = run("chart", &path, &["-o", target.to_str().unwrap()]);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    assert!(output.stdout.is_empty());
+    let picture = fs::read_to_string(&target).unwrap();
+    assert!(picture.starts_with("<svg") && picture.ends_with("</svg>\n"));
+    assert!(picture.contains(">100 A at 1 µs<") && picture.contains(">fire closes<"));
+    assert_eq!(out(&run("chart", &path, &[])), picture);
+    let other = out(&run("chart", &path, &["--set", "load=75ohm"]));
+    assert!(other.contains(">A bank into a resistor: load = 75 Ω<"));
+}
+
+#[test]
+fn chart_shows_a_part_of_the_span() {
+    let folder = folder();
+    let path = stage(&folder, "");
+    let zoomed = out(&run("chart", &path, &["--between", "0s", "2us"]));
+    assert!(zoomed.contains(">time (µs)<"));
+    for (from, to) in [("2us", "1us"), ("0s", "1s"), ("0s", "5V"), ("0s", "soon")] {
+        let output = run("chart", &path, &["--between", from, to]);
+        assert_eq!(output.status.code(), Some(2), "{from} {to}");
+        assert!(output.stdout.is_empty());
+    }
+}
+
+#[test]
+fn a_pipe_gets_no_plot() {
+    let folder = folder();
+    let page = out(&run("fire", &stage(&folder, ""), &["--color", "always"]));
+    assert!(!page.contains('┤') && !page.contains(": crest "));
+}

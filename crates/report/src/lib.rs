@@ -12,6 +12,7 @@
 
 pub mod look;
 pub mod number;
+pub mod plot;
 pub mod record;
 pub mod table;
 pub mod waveform;

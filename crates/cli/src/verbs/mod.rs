@@ -1,5 +1,6 @@
 //! The verbs, one a file: from arguments to data and an ending.
 
+mod chart;
 mod check;
 mod fire;
 mod judge;
@@ -61,6 +62,12 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             case,
             every,
         } => waveform::waveform(&file, &settings.set, case.case, every.as_deref(), shell),
+        Verb::Chart {
+            file,
+            settings,
+            case,
+            between,
+        } => chart::chart(&file, &settings.set, case.case, between.as_deref(), shell),
         Verb::Neaten { files, check } => neaten::neaten(&files, check, shell),
         Verb::Manual { words } => manual::manual(&words, shell),
     };

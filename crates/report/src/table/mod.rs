@@ -14,7 +14,7 @@ mod judge;
 mod list;
 mod stress;
 
-pub use fire::fire;
+pub use fire::{fire, fire_with};
 pub use grid::{Align, Cell, Grid};
 pub use hazards::CAUTIONS;
 pub use judge::judge;
@@ -77,6 +77,17 @@ pub fn set_in_words(set: &Set) -> String {
         SetValue::Circuit(words) => format!("{name} = {words}"),
     };
     set.iter().map(one).collect::<Vec<_>>().join(", ")
+}
+
+/// A circuit's title and what its case sets: `Field unit: load = 25 Ω`; empty where there is neither.
+#[must_use]
+pub fn titled(title: Option<&str>, set: &Set) -> String {
+    let set = set_in_words(set);
+    match title {
+        Some(title) if set.is_empty() => title.to_owned(),
+        Some(title) => format!("{title}: {set}"),
+        None => set,
+    }
 }
 
 /// Adds remarks, one a paragraph.
