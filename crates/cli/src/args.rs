@@ -13,7 +13,7 @@ use std::path::PathBuf;
     version,
     about = "Judges the pulse of a capacitor-discharge circuit against its requirements",
     long_about = LONG_ABOUT,
-    after_help = "example: pulsewright judge stage.shot\nmanual:  pulsewright manual",
+    after_help = "example: pulsewright judge stage.shot; all pages: pulsewright manual",
     after_long_help = EXIT_CODES_AND_CAUTIONS,
     disable_help_subcommand = true,
     subcommand_value_name = "VERB",
@@ -161,6 +161,25 @@ pub enum Verb {
         #[arg(long, num_args = 2, value_names = ["T1", "T2"])]
         between: Option<Vec<String>>,
     },
+    /// Write one HTML page: claims, cases, plots, balance, stress, the record
+    #[command(
+        after_help = "example:\n  pulsewright report stage.shot -o stage.html\n  \
+                      pulsewright report --verify stage.html stage.shot",
+        after_long_help = REPORT
+    )]
+    Report {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        /// Put a line of your own on the page (a date, a name, a document's number)
+        #[arg(long, value_name = "TEXT")]
+        stamp: Option<String>,
+        /// Compare a page with a fresh run of FILE in place of writing one
+        #[arg(long, value_name = "PAGE")]
+        verify: Option<PathBuf>,
+    },
     /// Print a netlist in its canonical layout
     #[command(after_help = "example:\n  pulsewright neaten stage.shot -o stage.shot")]
     Neaten {
@@ -195,6 +214,21 @@ examples:
   pulsewright chart stage.shot -o stage.svg
   pulsewright chart stage.shot --case 2 --between 0s 2ms -o front.svg";
 
+/// What `report --help` says last.
+const REPORT: &str = "\
+Every case is judged. The page shows the claims with their verdicts, the inputs with their SHA-256,
+settings and defaults, program and method, the cases, plots with cursors and zoom, where the joules
+went, stress, the event log, hazards, remarks, the netlist, and holds the record as JSON. It asks for
+no network, is whole without scripts and in print, and holds no date and no name unless --stamp gives
+one: the same input gives the same bytes. The exit code tells the verdicts, as under judge.
+
+--verify ends with 0 where the page is what this program writes of FILE with the same --set and
+--stamp, and with 1 where it is not, saying what differs.
+
+examples:
+  pulsewright report stage.shot -o stage.html
+  pulsewright report --verify stage.html stage.shot";
+
 /// What `--help` says first.
 const LONG_ABOUT: &str = "Judges the pulse of a capacitor-discharge circuit against its requirements.
 
@@ -208,11 +242,13 @@ const EXIT_CODES_AND_CAUTIONS: &str = "examples:
   pulsewright judge stage.shot --json -o stage.json
   pulsewright waveform stage.shot --every 10us -o pulse.csv
   pulsewright chart stage.shot -o pulse.svg
+  pulsewright report stage.shot -o stage.html
   pulsewright manual claim
 
 exit codes:
-  0    done; under judge and fire --strict every claim holds
-  1    some claim fails (neaten --check: some file is not in the canonical layout)
+  0    done; under judge, report and fire --strict every claim holds
+  1    some claim fails (neaten --check: some file is not in the canonical layout;
+       report --verify: the page is not what the netlist gives)
   2    the input is at fault: usage, netlist, a circuit without an answer, judge without claims
   3    the run broke: reading or writing, a limit, an internal error
   4    some claim is undecided and none fails

@@ -472,3 +472,53 @@ fn a_pipe_gets_no_plot() {
     let page = out(&run("fire", &stage(&folder, ""), &["--color", "always"]));
     assert!(!page.contains('┤') && !page.contains(": crest "));
 }
+
+#[test]
+fn a_report_is_the_same_each_time_and_verified() {
+    let folder = folder();
+    let path = stage(&folder, HOLDS);
+    let page = folder.path().join("stage.html");
+    let target = page.to_str().unwrap();
+    assert_eq!(run("report", &path, &["-o", target]).status.code(), Some(0));
+    assert_eq!(
+        out(&run("report", &path, &[])),
+        fs::read_to_string(&page).unwrap()
+    );
+    let checked = |more: &[&str]| {
+        let output = run("report", &path, &[&["--verify", target], more].concat());
+        (output.status.code(), out(&output))
+    };
+    assert_eq!(checked(&[]).0, Some(0));
+    let (code, said) = checked(&["--set", "load=60ohm"]);
+    assert_eq!(code, Some(1));
+    assert!(
+        said.contains("let-values set from outside differ"),
+        "{said}"
+    );
+    let changed = fs::read_to_string(&page).unwrap().replace("holds", "HOLDS");
+    fs::write(&page, changed).unwrap();
+    assert_eq!(checked(&[]).0, Some(1));
+    fs::write(&page, [0xff, 0xfe]).unwrap();
+    let (code, said) = checked(&[]);
+    assert_eq!(code, Some(1));
+    assert!(said.contains("no record"), "{said}");
+}
+
+#[test]
+fn a_report_ends_with_its_verdicts_and_wants_claims() {
+    ends("report", FAILS, &[], 1);
+    ends("report", UNDECIDED, &[], 4);
+    ends("report", "", &[], 2);
+}
+
+#[test]
+fn the_report_of_seven_loads_is_small() {
+    let netlist = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("../../netlists/damped-sine.shot");
+    let page = run("report", &netlist, &["--stamp", "filed under 42"]).stdout;
+    assert!((50_000..500_000).contains(&page.len()), "{}", page.len());
+    assert!(
+        String::from_utf8(page)
+            .unwrap()
+            .contains(">filed under 42<")
+    );
+}

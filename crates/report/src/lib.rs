@@ -3,7 +3,9 @@
 //! ```text
 //! Fired, Judged ──> record    JSON, one schema a kind and number
 //!               ──> table     text that fits the terminal
+//!               ──> plot      SVG, or characters
 //!               ──> waveform  CSV
+//!               ──> page      one HTML file (feature `html`)
 //! ```
 //!
 //! Only this crate knows what a record or a table looks like, and it computes nothing: every
@@ -12,6 +14,8 @@
 
 pub mod look;
 pub mod number;
+#[cfg(feature = "html")]
+pub mod page;
 pub mod plot;
 pub mod record;
 pub mod table;

@@ -7,6 +7,7 @@ mod judge;
 mod list;
 mod manual;
 mod neaten;
+mod report;
 mod watch;
 mod waveform;
 
@@ -68,6 +69,12 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             case,
             between,
         } => chart::chart(&file, &settings.set, case.case, between.as_deref(), shell),
+        Verb::Report {
+            file,
+            settings,
+            stamp,
+            verify,
+        } => report::report(&file, &settings.set, stamp, verify.as_deref(), shell),
         Verb::Neaten { files, check } => neaten::neaten(&files, check, shell),
         Verb::Manual { words } => manual::manual(&words, shell),
     };

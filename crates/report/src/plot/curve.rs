@@ -101,6 +101,52 @@ pub(super) fn points(channel: &Channel, from: f64, to: f64, columns: usize) -> V
     found
 }
 
+/// The fewest points of a channel between which its cubics stay within `tolerance` of all of its
+/// points, in the channel's unit: their places in it, in order. Both ends of every jump are kept.
+#[must_use]
+pub fn knots(channel: &Channel, tolerance: f64) -> Vec<usize> {
+    let n = channel.times.len();
+    let mut kept = Vec::new();
+    let mut start = 0;
+    while start < n {
+        kept.push(start);
+        let (mut reach, mut stride) = (start + 1, 1);
+        // Doubling strides, then halving ones: a cubic that fits far mostly fits nearer too.
+        while stride > 0 {
+            if reach + stride < n && fits(channel, start, reach + stride, tolerance) {
+                reach += stride;
+                stride *= 2;
+            } else {
+                stride /= 2;
+            }
+        }
+        start = reach;
+    }
+    kept
+}
+
+/// Whether the cubic between two points stays near those between them.
+fn fits(channel: &Channel, first: usize, last: usize, tolerance: f64) -> bool {
+    let two = |list: &[f64]| Some([*list.get(first)?, *list.get(last)?]);
+    let whole = (
+        two(&channel.times),
+        two(&channel.values),
+        two(&channel.slopes),
+    );
+    let (Some(t), Some(v), Some(s)) = whole else {
+        return false;
+    };
+    let whole = Piece { t, v, s };
+    (first..last).all(|k| {
+        piece(channel, k).is_some_and(|p| {
+            let middle = f64::midpoint(p.t[0], p.t[1]);
+            p.t[1] > p.t[0]
+                && (whole.value(p.t[1]) - p.v[1]).abs() <= tolerance
+                && (whole.value(middle) - p.value(middle)).abs() <= tolerance
+        })
+    })
+}
+
 /// Keeps of each of `columns` columns the first, lowest, highest and last point, in order, and of
 /// those the ones that a line needs to pass within `tolerance` of all.
 #[must_use]
@@ -199,6 +245,31 @@ mod tests {
         assert_eq!(value_at(&jump(), 1.5), None);
         let curve = thinned(&points(&jump(), 0.0, 1.0, 100), 100, 1e-3);
         assert_eq!(curve, [(0.0, 0.0), (0.5, 0.0), (0.5, 4.0), (1.0, 0.0)]);
+    }
+
+    #[test]
+    fn knots_are_few_and_keep_jumps() {
+        assert_eq!(knots(&jump(), 1e-9), [0, 1, 2, 3]);
+        let times: Vec<f64> = (0..=5000).map(|k| f64::from(k) / 5000.0).collect();
+        let wave = Channel {
+            values: times.iter().map(|t| (20.0 * t).sin()).collect(),
+            slopes: times.iter().map(|t| 20.0 * (20.0 * t).cos()).collect(),
+            times,
+            ..Channel::default()
+        };
+        let kept = knots(&wave, 1e-6);
+        assert!((20..200).contains(&kept.len()), "{}", kept.len());
+        let pick = |list: &[f64]| kept.iter().map(|k| list[*k]).collect::<Vec<f64>>();
+        let thin = Channel {
+            times: pick(&wave.times),
+            values: pick(&wave.values),
+            slopes: pick(&wave.slopes),
+            ..Channel::default()
+        };
+        for t in &wave.times {
+            let (a, b) = (value_at(&thin, *t).unwrap(), (20.0 * t).sin());
+            assert!((a - b).abs() < 2e-6, "{t}: {a} {b}");
+        }
     }
 
     #[test]

@@ -15,9 +15,11 @@ mod scale;
 mod svg;
 mod terminal;
 
-pub use curve::{Trace, thinned, value_at};
+pub use curve::{Trace, knots, thinned, value_at};
 pub use scale::{Axis, Tick};
-pub use svg::{Figure, figure, svg};
+pub use svg::{Figure, SHEET, figure, svg};
+#[cfg(feature = "html")]
+pub(crate) use svg::{escaped, short};
 pub use terminal::{Ink, terminal};
 
 use crate::number::printed;

@@ -17,8 +17,16 @@ mod stress;
 pub use fire::{fire, fire_with};
 pub use grid::{Align, Cell, Grid};
 pub use hazards::CAUTIONS;
+#[cfg(feature = "html")]
+pub(crate) use hazards::in_words as hazard_in_words;
 pub use judge::judge;
 pub use list::list;
+#[cfg(feature = "html")]
+pub(crate) use {
+    balance::{entries, least},
+    claims::reason,
+    hazards::{is_said, worst},
+};
 
 use crate::look::{Look, Tone, paragraph};
 use crate::number;

@@ -61,12 +61,12 @@ impl EventMarks {
     pub(super) fn draw(&self, sheet: &mut Sheet<'_, '_>, top: f64, (first, bottom): (f64, f64)) {
         for (x, label) in &self.marks {
             let Some((row, name, start)) = label else {
-                sheet.paper.line("event", (*x, first), (*x, bottom));
+                sheet.paper.line("event t", (*x, first), (*x, bottom));
                 continue;
             };
             let y = top + ROW * (*row as f64 + 1.0) - 3.0;
-            sheet.paper.line("event", (*x, y + 3.0), (*x, bottom));
-            sheet.paper.text("soft halo", (*start, y), name);
+            sheet.paper.line("event t", (*x, y + 3.0), (*x, bottom));
+            sheet.paper.text("soft halo t", (*start, y), name);
         }
     }
 }
@@ -88,7 +88,7 @@ pub(super) fn window_shades(sheet: &mut Sheet<'_, '_>, top: f64, bottom: f64) {
         };
         sheet
             .paper
-            .rect("shade", (left, top), (right - left, bottom - top), "");
+            .rect("shade t", (left, top), (right - left, bottom - top), "");
     }
 }
 
@@ -145,9 +145,9 @@ pub(super) fn window_bars(sheet: &mut Sheet<'_, '_>) {
             );
             sheet
                 .paper
-                .raw(&format!("<path class=\"bar\" d=\"{path}\"/>"));
+                .raw(&format!("<path class=\"bar t\" d=\"{path}\"/>"));
         }
-        sheet.paper.text("soft", (start, y + 13.0), &name);
+        sheet.paper.text("soft t", (start, y + 13.0), &name);
     }
     sheet.top += 22.0 * rows as f64;
 }
@@ -172,8 +172,8 @@ pub(super) fn gates(sheet: &mut Sheet<'_, '_>, field: &Field<'_>, taken: &mut Ve
                 let fill = format!(" fill=\"url(#{}-hatch)\"", sheet.id);
                 sheet
                     .paper
-                    .rect("", (*left, from), (right - left, depth), &fill);
-                sheet.paper.line("gate", (*left, y), (*right, y));
+                    .rect("t", (*left, from), (right - left, depth), &fill);
+                sheet.paper.line("gate t", (*left, y), (*right, y));
                 taken.push((*left, from - 1.0, *right, from + depth + 1.0));
             }
             if let Some(span) = spans
@@ -233,7 +233,7 @@ fn label(
         return;
     }
     taken.push(spot);
-    sheet.paper.text("no halo", (x, base), &text);
+    sheet.paper.text("no halo t", (x, base), &text);
 }
 
 /// The crest of a channel in pixels, where it is shown; none of one that never leaves zero.
@@ -253,7 +253,7 @@ pub(super) fn markers(sheet: &mut Sheet<'_, '_>, field: &Field<'_>, taken: &mut 
         };
         taken.push((x - 5.0, y - 5.0, x + 5.0, y + 5.0));
         sheet.paper.raw(&format!(
-            "<g class=\"mark {}\" transform=\"translate({} {})\">{}</g>",
+            "<g class=\"mark t {}\" transform=\"translate({} {})\">{}</g>",
             look(*index),
             px(x),
             px(y),
@@ -307,7 +307,7 @@ fn name_crest(
             && base + 3.0 < field.bottom();
         if fits && !taken.iter().any(|b| touches(*b, spot)) {
             taken.push(spot);
-            sheet.paper.text("halo", (left, base), &text);
+            sheet.paper.text("halo t", (left, base), &text);
             return;
         }
     }

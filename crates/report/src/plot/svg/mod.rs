@@ -23,9 +23,14 @@ use super::curve::{Trace, points, thinned};
 use super::{Axis, Panel, Plot, events, quantity_of};
 use crate::number::{brief, quantity};
 use marks::{Box2, crests, event_marks, gates, markers, window_bars, window_shades};
-use paper::{Paper, escaped, px, width_of};
+#[cfg(feature = "html")]
+pub(crate) use paper::escaped;
+#[cfg(not(feature = "html"))]
+use paper::escaped;
+use paper::{Paper, px, width_of};
 use pulsewright_study::outcome::Channel;
-use style::{SHEET, look};
+pub use style::SHEET;
+use style::look;
 
 /// Width of a picture, in pixels.
 const WIDTH: f64 = 760.0;
@@ -56,12 +61,23 @@ pub struct Figure {
 /// A plot as an SVG file.
 #[must_use]
 pub fn svg(plot: &Plot<'_>, title: &str) -> String {
-    figure(plot, title, "plot").svg
+    picture(
+        plot,
+        title,
+        "plot",
+        &format!("<style>\n{SHEET}\n</style>\n"),
+    )
+    .svg
 }
 
-/// A plot as an SVG element whose ids begin with `id`, which is unique in its page.
+/// A plot as an SVG element of a page that holds [`SHEET`]; its ids begin with `id`, which is
+/// unique there.
 #[must_use]
 pub fn figure(plot: &Plot<'_>, title: &str, id: &str) -> Figure {
+    picture(plot, title, id, "")
+}
+
+fn picture(plot: &Plot<'_>, title: &str, id: &str, style: &str) -> Figure {
     let time = Axis::over(plot.from, plot.to, "s", 8);
     let mut sheet = Sheet {
         plot,
@@ -73,7 +89,7 @@ pub fn figure(plot: &Plot<'_>, title: &str, id: &str) -> Figure {
         panel_of: Vec::new(),
     };
     sheet.draw(title);
-    sheet.finish(title)
+    sheet.finish(title, style)
 }
 
 /// A panel as laid out.
@@ -178,7 +194,7 @@ impl<'a> Sheet<'a, '_> {
         let (top, bottom) = (field.top, field.bottom());
         for time in self.time.minor_ticks() {
             let x = self.x(time);
-            self.paper.line("fine", (x, top), (x, bottom));
+            self.paper.line("fine t", (x, top), (x, bottom));
         }
         for value in field.axis.minor_ticks() {
             let y = field.y(value);
@@ -187,7 +203,7 @@ impl<'a> Sheet<'a, '_> {
         }
         for tick in self.time.ticks() {
             let x = self.x(tick.value);
-            self.paper.line("grid", (x, top), (x, bottom));
+            self.paper.line("grid t", (x, top), (x, bottom));
         }
         for tick in field.axis.ticks() {
             let y = field.y(tick.value);
@@ -245,7 +261,7 @@ impl<'a> Sheet<'a, '_> {
                 })
                 .collect();
             self.paper.raw(&format!(
-                "<path class=\"curve {}\" d=\"M{}\"/>",
+                "<path class=\"curve t {}\" d=\"M{}\"/>",
                 look(*index),
                 path.join("L")
             ));
@@ -256,20 +272,20 @@ impl<'a> Sheet<'a, '_> {
     fn time_axis(&mut self, bottom: f64) {
         for time in self.time.minor_ticks() {
             let x = self.x(time);
-            self.paper.line("tick", (x, bottom), (x, bottom + 3.0));
+            self.paper.line("tick t", (x, bottom), (x, bottom + 3.0));
         }
         for tick in self.time.ticks() {
             let x = self.x(tick.value);
-            self.paper.line("tick", (x, bottom), (x, bottom + 6.0));
-            self.paper.text("mid", (x, bottom + 18.0), &tick.label);
+            self.paper.line("tick t", (x, bottom), (x, bottom + 6.0));
+            self.paper.text("mid t", (x, bottom + 18.0), &tick.label);
         }
         let title = titled("time", &self.time.unit);
         let middle = f64::midpoint(LEFT, RIGHT);
-        self.paper.text("mid", (middle, bottom + 34.0), &title);
+        self.paper.text("mid t", (middle, bottom + 34.0), &title);
         self.top = bottom + 42.0;
     }
 
-    fn finish(self, title: &str) -> Figure {
+    fn finish(self, title: &str, style: &str) -> Figure {
         let height = (self.top + 6.0).ceil();
         let (id, words) = (self.id, description(self.plot));
         let name = if title.is_empty() { "waveforms" } else { title };
@@ -277,7 +293,7 @@ impl<'a> Sheet<'a, '_> {
         let head = format!(
             "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"pulse-plot\" id=\"{id}\" role=\"img\" \
              aria-labelledby=\"{id}-title {id}-desc\" viewBox=\"0 0 {w} {h}\" width=\"{w}\" height=\"{h}\">\n\
-             <title id=\"{id}-title\">{}</title>\n<desc id=\"{id}-desc\">{}</desc>\n<style>\n{SHEET}\n</style>\n\
+             <title id=\"{id}-title\">{}</title>\n<desc id=\"{id}-desc\">{}</desc>\n{style}\
              <defs><pattern id=\"{id}-hatch\" width=\"6\" height=\"6\" patternUnits=\"userSpaceOnUse\" \
              patternTransform=\"rotate(45)\"><line class=\"hatch\" x1=\"0\" y1=\"0\" x2=\"0\" y2=\"6\"/></pattern></defs>\n\
              <rect class=\"paper\" width=\"{w}\" height=\"{h}\"/>\n",
@@ -337,7 +353,7 @@ fn titled(quantity: &str, unit: &str) -> String {
 }
 
 /// At most so many characters of a text.
-fn short(text: &str, most: usize) -> String {
+pub(crate) fn short(text: &str, most: usize) -> String {
     if text.chars().count() <= most {
         return text.to_owned();
     }

@@ -63,7 +63,7 @@ pub(super) fn px(x: f64) -> String {
 }
 
 /// A text with what XML reserves, and what it forbids, replaced.
-pub(super) fn escaped(text: &str) -> String {
+pub(crate) fn escaped(text: &str) -> String {
     let mut out = String::with_capacity(text.len());
     for c in text.chars() {
         match c {

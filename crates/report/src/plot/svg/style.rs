@@ -7,8 +7,8 @@
 /// How many channels look different.
 pub(super) const LOOKS: usize = 6;
 
-/// The style sheet: everything under `.pulse-plot`, so that it may stand in a page.
-pub(super) const SHEET: &str = "\
+/// The style sheet of every picture: everything under `.pulse-plot`, so that it may stand in a page.
+pub const SHEET: &str = "\
 .pulse-plot{--paper:#fff;--ink:#1b1b1b;--soft:#5a5a5a;--grid:#e4e4e4;--fine:#f3f3f3;--bad:#a3281b;--shade:#5a7fa8;\
 --c0:#0072b2;--c1:#d55e00;--c2:#009e73;--c3:#b4578c;--c4:#b87a00;--c5:#3a8fc4;\
 font-family:\"Segoe UI\",\"Helvetica Neue\",Arial,\"Liberation Sans\",\"DejaVu Sans\",sans-serif;font-size:11px}
