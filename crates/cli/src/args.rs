@@ -197,6 +197,23 @@ pub enum Verb {
         #[arg(value_name = "WORD")]
         words: Vec<String>,
     },
+    /// Print the completions for a shell, for whoever packages the command
+    #[command(
+        hide = true,
+        after_help = "example:\n  pulsewright completions bash -o /etc/bash_completion.d/pulsewright"
+    )]
+    Completions {
+        /// The shell
+        #[arg(value_name = "SHELL")]
+        dialect: clap_complete::Shell,
+    },
+    /// Write a manual page for each verb into a folder, for whoever packages the command
+    #[command(hide = true, after_help = "example:\n  pulsewright pages man1")]
+    Pages {
+        /// The folder, which is there already
+        #[arg(value_name = "DIR")]
+        folder: PathBuf,
+    },
 }
 
 /// What `chart --help` says last.

@@ -522,3 +522,44 @@ fn the_report_of_seven_loads_is_small() {
             .contains(">filed under 42<")
     );
 }
+
+#[test]
+fn completions_know_every_verb() {
+    for shell in ["bash", "zsh", "fish"] {
+        let output = pulsewright().args(["completions", shell]).output().unwrap();
+        assert_eq!(output.status.code(), Some(0), "{shell}");
+        for verb in ["fire", "judge", "chart", "report", "--between", "--verify"] {
+            let bare = verb.trim_start_matches('-');
+            assert!(out(&output).contains(bare), "{shell}: {verb}");
+        }
+    }
+    let output = pulsewright()
+        .args(["completions", "cobol"])
+        .output()
+        .unwrap();
+    assert_eq!(output.status.code(), Some(2));
+}
+
+#[test]
+fn manual_pages_are_written_for_every_verb() {
+    let folder = folder();
+    let write = || {
+        let output = pulsewright()
+            .arg("pages")
+            .arg(folder.path())
+            .output()
+            .unwrap();
+        assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+        fs::read_to_string(folder.path().join("pulsewright-chart.1")).unwrap()
+    };
+    let page = write();
+    assert!(page.contains("between") && page.contains("SVG"), "{page}");
+    assert_eq!(write(), page);
+    assert!(folder.path().join("pulsewright.1").exists());
+    assert!(!folder.path().join("pulsewright-pages.1").exists());
+    let gone = pulsewright()
+        .args(["pages", "no/such/folder"])
+        .output()
+        .unwrap();
+    assert_eq!(gone.status.code(), Some(3));
+}

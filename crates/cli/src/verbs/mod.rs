@@ -2,6 +2,7 @@
 
 mod chart;
 mod check;
+mod completions;
 mod fire;
 mod judge;
 mod list;
@@ -77,6 +78,8 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         } => report::report(&file, &settings.set, stamp, verify.as_deref(), shell),
         Verb::Neaten { files, check } => neaten::neaten(&files, check, shell),
         Verb::Manual { words } => manual::manual(&words, shell),
+        Verb::Completions { dialect } => completions::completions(dialect, shell),
+        Verb::Pages { folder } => completions::pages(&folder),
     };
     done.unwrap_or_else(|trouble| failed(shell, &trouble, json))
 }
