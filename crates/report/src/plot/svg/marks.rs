@@ -1,12 +1,10 @@
 //! What is marked in a picture: events, windows, limits, crests.
 
+use super::labels::{Box2, place};
 use super::paper::{px, width_of};
 use super::style::{look, marker};
 use super::{Field, LEFT, RIGHT, ROW, Sheet, crest_words, short};
 use pulsewright_study::outcome::{Channel, Gate};
-
-/// A rectangle that a label has taken: left, top, right, bottom.
-pub(super) type Box2 = (f64, f64, f64, f64);
 
 /// The most rows of names of events.
 const EVENT_ROWS: usize = 4;
@@ -220,20 +218,24 @@ fn label(
         .map_or("", |c| c.relation.as_str());
     let text = short(&format!("{}: {relation}", gate.claim), 60);
     let width = width_of(&text);
-    let base = if gate.above { y + 13.0 } else { y - 5.0 };
-    let x = if gate.every {
-        right - 6.0 - width
+    let bases = if gate.above {
+        [y + 13.0, y + 27.0]
     } else {
-        right + 5.0
+        [y - 5.0, y - 19.0]
     };
-    let x = x.max(left.min(LEFT) + 4.0).min(RIGHT - width - 4.0);
-    let base = base.clamp(field.top + 11.0, field.bottom() - 4.0);
-    let spot = (x, base - 10.0, x + width, base + 3.0);
-    if taken.iter().any(|b| touches(*b, spot)) {
-        return;
+    let starts = if gate.every {
+        let middle = f64::midpoint(left, right) - width / 2.0;
+        [right - 6.0 - width, middle, left + 6.0]
+    } else {
+        [right + 5.0, left - 5.0 - width, left]
+    };
+    let spots: Vec<(f64, f64)> = bases
+        .iter()
+        .flat_map(|base| starts.iter().map(|x| (*x, *base)))
+        .collect();
+    if let Some(spot) = place(sheet, field, width, &spots, taken) {
+        sheet.paper.text("no halo t", spot, &text);
     }
-    taken.push(spot);
-    sheet.paper.text("no halo t", (x, base), &text);
 }
 
 /// The crest of a channel in pixels, where it is shown; none of one that never leaves zero.
@@ -252,67 +254,69 @@ pub(super) fn markers(sheet: &mut Sheet<'_, '_>, field: &Field<'_>, taken: &mut 
             continue;
         };
         taken.push((x - 5.0, y - 5.0, x + 5.0, y + 5.0));
-        sheet.paper.raw(&format!(
-            "<g class=\"mark t {}\" transform=\"translate({} {})\">{}</g>",
-            look(*index),
-            px(x),
-            px(y),
-            marker(*index)
-        ));
+        mark(sheet, *index, (x, y));
     }
 }
 
 /// Names the crest of each curve of a panel with its value and instant.
 pub(super) fn crests(sheet: &mut Sheet<'_, '_>, field: &Field<'_>, taken: &mut Vec<Box2>) {
-    for (_, channel) in &field.panel.channels {
+    for (index, channel) in &field.panel.channels {
         if let Some(place) = crest_at(sheet, field, channel) {
-            name_crest(sheet, field, channel, place, taken);
+            name_crest(sheet, field, (*index, channel), place, taken);
         }
     }
 }
 
-/// Writes a crest beside its marker: where there is room, to the right, above, below, to the left.
+/// Writes a crest beside its marker, where there is room; with the marker again where a panel has
+/// several.
 fn name_crest(
     sheet: &mut Sheet<'_, '_>,
     field: &Field<'_>,
-    channel: &Channel,
+    (index, channel): (usize, &Channel),
     (x, y): (f64, f64),
     taken: &mut Vec<Box2>,
 ) {
     let Some(text) = crest_words(channel, 4) else {
         return;
     };
-    let width = width_of(&text);
+    let key = if field.panel.channels.len() > 1 {
+        12.0
+    } else {
+        0.0
+    };
+    let width = key + width_of(&text);
     let away = if channel.crest.is_some_and(|c| c.value < 0.0) {
         15.0
     } else {
         -6.0
     };
-    let spots = [
+    let mut spots = vec![
         (x + 7.0, y + away),
         (x - 7.0 - width, y + away),
-        (x + 7.0, y + 4.0),
-        (x + 7.0, y - 20.0),
-        (x + 7.0, y + 18.0),
-        (x - 7.0 - width, y + 18.0),
-        (x + 30.0, y + 6.0),
-        (x + 30.0, y + 32.0),
-        (x + 30.0, y + 46.0),
+        (x + 9.0, y + 4.0),
+        (x - width / 2.0, y - 9.0),
     ];
-    for (left, base) in spots {
-        let spot = (left, base - 10.0, left + width, base + 3.0);
-        let fits = left > LEFT + 2.0
-            && left + width < RIGHT - 2.0
-            && base - 10.0 > field.top
-            && base + 3.0 < field.bottom();
-        if fits && !taken.iter().any(|b| touches(*b, spot)) {
-            taken.push(spot);
-            sheet.paper.text("halo t", (left, base), &text);
-            return;
+    for down in [18.0, 32.0, 46.0, 60.0, -20.0] {
+        for side in [x + 7.0, x + 30.0, x - 7.0 - width] {
+            spots.push((side, y + down));
         }
     }
+    let Some((left, base)) = place(sheet, field, width, &spots, taken) else {
+        return;
+    };
+    if key > 0.0 {
+        mark(sheet, index, (left + 4.0, base - 4.0));
+    }
+    sheet.paper.text("halo t", (left + key, base), &text);
 }
 
-fn touches(a: Box2, b: Box2) -> bool {
-    a.0 < b.2 && b.0 < a.2 && a.1 < b.3 && b.1 < a.3
+/// Draws a channel's marker.
+fn mark(sheet: &mut Sheet<'_, '_>, index: usize, (x, y): (f64, f64)) {
+    sheet.paper.raw(&format!(
+        "<g class=\"mark t {}\" transform=\"translate({} {})\">{}</g>",
+        look(index),
+        px(x),
+        px(y),
+        marker(index)
+    ));
 }

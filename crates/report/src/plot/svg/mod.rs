@@ -15,6 +15,7 @@
 //! The same plot gives the same bytes. Text is text, colours are in the style sheet, and what the
 //! picture says is said in its description too.
 
+mod labels;
 mod marks;
 mod paper;
 mod style;
@@ -22,7 +23,8 @@ mod style;
 use super::curve::{Trace, points, thinned};
 use super::{Axis, Panel, Plot, events, quantity_of};
 use crate::number::{brief, quantity};
-use marks::{Box2, crests, event_marks, gates, markers, window_bars, window_shades};
+use labels::Box2;
+use marks::{crests, event_marks, gates, markers, window_bars, window_shades};
 #[cfg(feature = "html")]
 pub(crate) use paper::escaped;
 #[cfg(not(feature = "html"))]
