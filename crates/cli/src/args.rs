@@ -237,7 +237,7 @@ Every case is judged. The page shows the claims with their verdicts, the inputs 
 settings and defaults, program and method, the cases, plots with cursors and zoom, where the joules
 went, stress, the event log, hazards, remarks, the netlist, and holds the record as JSON. It asks for
 no network, is whole without scripts and in print, and holds no date and no name unless --stamp gives
-one: the same input gives the same bytes. The exit code tells the verdicts, as under judge.
+one: the same input gives the same bytes. It ends with 0 whatever the verdicts; judge tells those.
 
 --verify ends with 0 where the page is what this program writes of FILE with the same --set and
 --stamp, and with 1 where it is not, saying what differs.
@@ -263,7 +263,7 @@ const EXIT_CODES_AND_CAUTIONS: &str = "examples:
   pulsewright manual claim
 
 exit codes:
-  0    done; under judge, report and fire --strict every claim holds
+  0    done; under judge and fire --strict every claim holds
   1    some claim fails (neaten --check: some file is not in the canonical layout;
        report --verify: the page is not what the netlist gives)
   2    the input is at fault: usage, netlist, a circuit without an answer, judge without claims

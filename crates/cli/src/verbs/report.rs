@@ -45,7 +45,7 @@ pub fn report(
         judged.cases.iter().flat_map(|c| &c.remarks),
     );
     deliver(shell, fresh.as_bytes())?;
-    Ok(Ending::of(judged.claims.iter().map(|c| c.verdict)))
+    Ok(Ending::Done)
 }
 
 /// The most differences that are said.
