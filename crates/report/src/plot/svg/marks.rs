@@ -295,6 +295,9 @@ fn name_crest(
         (x - 7.0 - width, y + away),
         (x + 9.0, y + 4.0),
         (x - width / 2.0, y - 9.0),
+        (x + 30.0, y + 4.0),
+        (x + 50.0, y + 4.0),
+        (x + 80.0, y + 4.0),
     ];
     for down in [18.0, 32.0, 46.0, 60.0, -20.0] {
         for side in [x + 7.0, x + 30.0, x - 7.0 - width] {
