@@ -432,12 +432,12 @@ fn readings(judged: &Judged) -> Option<Table> {
     })
 }
 
-/// Which cases are shown with plots.
+/// Which cases are shown with plots; empty where all are.
 fn shown(judged: &Judged) -> String {
-    let (all, some) = (judged.cases.len(), picked(judged).len());
-    if some < all {
+    let all = judged.cases.len();
+    if picked(judged).len() < all {
         format!(
-            "Of {all} cases the {some} are shown in which some claim comes nearest to failing; the record \
+            "Of {all} cases only those are shown in which some claim comes nearest to failing; the record \
              holds the numbers of all."
         )
     } else {
