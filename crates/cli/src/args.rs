@@ -186,6 +186,43 @@ pub enum Verb {
         #[arg(long, value_name = "TIME")]
         every: Option<String>,
     },
+    /// Draw the channels as SVG: crests, events, windows, limits of claims
+    #[command(
+        after_help = "example:\n  pulsewright chart stage.shot -o stage.svg\n  \
+                      pulsewright chart stage.shot --case 2 --between 0s 2ms -o front.svg",
+        after_long_help = CHART
+    )]
+    Chart {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        #[command(flatten)]
+        case: Case,
+        /// Show only the time from T1 to T2 (`--between 0s 20us`)
+        #[arg(long, num_args = 2, value_names = ["T1", "T2"])]
+        between: Option<Vec<String>>,
+    },
+    /// Write one HTML page: claims, cases, plots, balance, stress, the record
+    #[command(
+        after_help = "example:\n  pulsewright report stage.shot -o stage.html\n  \
+                      pulsewright report --verify stage.html stage.shot",
+        after_long_help = REPORT
+    )]
+    Report {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        /// Put a line of your own on the page (a date, a name, a document's number)
+        #[arg(long, value_name = "TEXT")]
+        stamp: Option<String>,
+        /// Compare a page with a fresh run of FILE in place of writing one
+        #[arg(long, value_name = "PAGE")]
+        verify: Option<PathBuf>,
+    },
     /// Print a netlist in its canonical layout
     #[command(after_help = "example:\n  pulsewright neaten stage.shot -o stage.shot")]
     Neaten {
@@ -203,7 +240,54 @@ pub enum Verb {
         #[arg(value_name = "WORD")]
         words: Vec<String>,
     },
+    /// Print the completions for a shell, for whoever packages the command
+    #[command(
+        hide = true,
+        after_help = "example:\n  pulsewright completions bash -o /etc/bash_completion.d/pulsewright"
+    )]
+    Completions {
+        /// The shell
+        #[arg(value_name = "SHELL")]
+        dialect: clap_complete::Shell,
+    },
+    /// Write a manual page for each verb into a folder, for whoever packages the command
+    #[command(hide = true, after_help = "example:\n  pulsewright pages man1")]
+    Pages {
+        /// The folder, which is there already
+        #[arg(value_name = "DIR")]
+        folder: PathBuf,
+    },
 }
+
+/// What `chart --help` says last.
+const CHART: &str = "\
+The channels stand in panels by quantity over one time axis, each with a colour, dashes and a marker
+of its own. Marked are:
+  the crest of each channel with value and instant
+  events, as dashed verticals with the part and what it did
+  windows of readings and claims, shaded and named under the axis
+  limits of claims on the highest, lowest or largest value of a channel, the forbidden side hatched
+The picture follows the viewer's light or dark setting, and has a description in words. The same
+input gives the same bytes.
+
+examples:
+  pulsewright chart stage.shot -o stage.svg
+  pulsewright chart stage.shot --case 2 --between 0s 2ms -o front.svg";
+
+/// What `report --help` says last.
+const REPORT: &str = "\
+Every case is judged. The page shows the claims with their verdicts, the inputs with their SHA-256,
+settings and defaults, program and method, the cases, plots with cursors and zoom, where the joules
+went, stress, the event log, hazards, remarks, the netlist, and holds the record as JSON. It asks for
+no network, is whole without scripts and in print, and holds no date and no name unless --stamp gives
+one: the same input gives the same bytes. It ends with 0 whatever the verdicts; judge tells those.
+
+--verify ends with 0 where the page is what this program writes of FILE with the same --set and
+--stamp, and with 1 where it is not, saying what differs.
+
+examples:
+  pulsewright report stage.shot -o stage.html
+  pulsewright report --verify stage.html stage.shot";
 
 /// What `--help` says first.
 const LONG_ABOUT: &str = "Judges the pulse of a capacitor-discharge circuit against its requirements.
@@ -252,11 +336,14 @@ const EXIT_CODES_AND_CAUTIONS: &str = "examples:
   pulsewright fire stage.shot --set load=75ohm
   pulsewright judge stage.shot --json -o stage.json
   pulsewright waveform stage.shot --every 10us -o pulse.csv
+  pulsewright chart stage.shot -o pulse.svg
+  pulsewright report stage.shot -o stage.html
   pulsewright manual claim
 
 exit codes:
   0    done; under judge and fire --strict every claim holds
-  1    some claim fails (neaten --check: some file is not in the canonical layout)
+  1    some claim fails (neaten --check: some file is not in the canonical layout;
+       report --verify: the page is not what the netlist gives)
   2    the input is at fault: usage, netlist, a circuit without an answer, judge without claims
   3    the run broke: reading or writing, a limit, an internal error
   4    some claim is undecided and none fails

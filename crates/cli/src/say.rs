@@ -18,7 +18,7 @@ use pulsewright::report::look::Tone;
 use pulsewright::report::record::{Bytes, MistakeRecord, MistakesRecord};
 use pulsewright::study::outcome::Remark;
 use pulsewright::{Mistakes, Netlist};
-use std::io::{self, Write};
+use std::io::{self, IsTerminal, Write};
 
 /// Writes to standard error, coloured where it may be.
 fn write(shell: &Shell, text: &str) {
@@ -37,6 +37,24 @@ pub fn note(shell: &Shell, text: &str) {
     if shell.talk >= Talk::Usual {
         write(shell, &format!("{text}\n"));
     }
+}
+
+/// The columns of the terminal that a passing line may be shown on; none where standard error is
+/// no terminal, and under `-q`.
+pub fn terminal_columns(shell: &Shell) -> Option<usize> {
+    if shell.talk < Talk::Usual || !io::stderr().is_terminal() {
+        return None;
+    }
+    let size = terminal_size::terminal_size_of(io::stderr());
+    Some(size.map_or(80, |(width, _)| usize::from(width.0)))
+}
+
+/// Writes over the line that the cursor is in, and leaves the cursor at its start.
+pub fn over(text: &str, columns: usize) {
+    let room = columns.saturating_sub(1);
+    let text: String = text.chars().take(room).collect();
+    let mut out = io::stderr().lock();
+    let _ = write!(out, "\r{text:room$}\r").and_then(|()| out.flush());
 }
 
 /// A line under `-v`.

@@ -6,6 +6,7 @@ use crate::output::Target;
 use crate::stop::Stop;
 use anstream::{AutoStream, ColorChoice};
 use pulsewright::report::Look;
+use pulsewright::report::plot::Ink;
 use std::io::{self, IsTerminal};
 
 /// The surroundings of a run.
@@ -15,6 +16,8 @@ pub struct Shell {
     pub target: Target,
     /// How a page is laid out there.
     pub look: Look,
+    /// What a plot in the page is drawn with; none where no terminal shows it.
+    pub ink: Option<Ink>,
     /// How messages on standard error are.
     pub messages: ColorChoice,
     /// How much is said beside errors.
@@ -51,6 +54,7 @@ impl Shell {
         };
         Shell {
             look: look(&target),
+            ink: ink(&target),
             target,
             messages: AutoStream::choice(&io::stderr()),
             talk,
@@ -73,4 +77,24 @@ fn look(target: &Target) -> Look {
         usize::from(width.0).max(40)
     });
     Look { width, colour }
+}
+
+/// Dots where the terminal shows more than ASCII, letters and signs where it does not.
+fn ink(target: &Target) -> Option<Ink> {
+    if *target != Target::Standard || !io::stdout().is_terminal() {
+        return None;
+    }
+    let set = |name: &str| std::env::var(name).ok().filter(|v| !v.is_empty());
+    let locale = ["LC_ALL", "LC_CTYPE", "LANG"].into_iter().find_map(set);
+    let term = set("TERM");
+    let wide = locale.is_some_and(|l| {
+        let l = l.to_ascii_lowercase();
+        l.contains("utf-8") || l.contains("utf8")
+    });
+    let plain = term.is_none_or(|t| matches!(t.as_str(), "dumb" | "linux" | "vt100"));
+    Some(if wide && !plain {
+        Ink::Dots
+    } else {
+        Ink::Signs
+    })
 }

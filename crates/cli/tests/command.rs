@@ -473,3 +473,133 @@ fn a_signal_ends_a_run_with_its_code() {
         assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 1);
     }
 }
+
+#[test]
+fn chart_draws_the_channels_the_same_each_time() {
+    let folder = folder();
+    let path = stage(
+        &folder,
+        "claim top: largest current through chest is at most 120 A",
+    );
+    let target = folder.path().join("stage.svg");
+    let output = run("chart", &path, &["-o", target.to_str().unwrap()]);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    assert!(output.stdout.is_empty());
+    let picture = fs::read_to_string(&target).unwrap();
+    assert!(picture.starts_with("<svg") && picture.ends_with("</svg>\n"));
+    assert!(picture.contains(">100 A at 1 µs<") && picture.contains(">fire closes<"));
+    assert_eq!(out(&run("chart", &path, &[])), picture);
+    let other = out(&run("chart", &path, &["--set", "load=75ohm"]));
+    assert!(other.contains(">A bank into a resistor: load = 75 Ω<"));
+}
+
+#[test]
+fn chart_shows_a_part_of_the_span() {
+    let folder = folder();
+    let path = stage(&folder, "");
+    let zoomed = out(&run("chart", &path, &["--between", "0s", "2us"]));
+    assert!(zoomed.contains(">time (µs)<"));
+    for (from, to) in [("2us", "1us"), ("0s", "1s"), ("0s", "5V"), ("0s", "soon")] {
+        let output = run("chart", &path, &["--between", from, to]);
+        assert_eq!(output.status.code(), Some(2), "{from} {to}");
+        assert!(output.stdout.is_empty());
+    }
+}
+
+#[test]
+fn a_pipe_gets_no_plot() {
+    let folder = folder();
+    let page = out(&run("fire", &stage(&folder, ""), &["--color", "always"]));
+    assert!(!page.contains('┤') && !page.contains(": crest "));
+}
+
+#[test]
+fn a_report_is_the_same_each_time_and_verified() {
+    let folder = folder();
+    let path = stage(&folder, HOLDS);
+    let page = folder.path().join("stage.html");
+    let target = page.to_str().unwrap();
+    assert_eq!(run("report", &path, &["-o", target]).status.code(), Some(0));
+    assert_eq!(
+        out(&run("report", &path, &[])),
+        fs::read_to_string(&page).unwrap()
+    );
+    let checked = |more: &[&str]| {
+        let output = run("report", &path, &[&["--verify", target], more].concat());
+        (output.status.code(), out(&output))
+    };
+    assert_eq!(checked(&[]).0, Some(0));
+    let (code, said) = checked(&["--set", "load=60ohm"]);
+    assert_eq!(code, Some(1));
+    assert!(
+        said.contains("let-values set from outside differ"),
+        "{said}"
+    );
+    let changed = fs::read_to_string(&page).unwrap().replace("holds", "HOLDS");
+    fs::write(&page, changed).unwrap();
+    assert_eq!(checked(&[]).0, Some(1));
+    fs::write(&page, [0xff, 0xfe]).unwrap();
+    let (code, said) = checked(&[]);
+    assert_eq!(code, Some(1));
+    assert!(said.contains("no record"), "{said}");
+}
+
+#[test]
+fn a_report_is_done_whatever_the_verdicts_and_wants_claims() {
+    ends("report", FAILS, &[], 0);
+    ends("report", UNDECIDED, &[], 0);
+    ends("report", "", &[], 2);
+}
+
+#[test]
+fn the_report_of_seven_loads_is_small() {
+    let netlist = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("../../netlists/damped-sine.shot");
+    let page = run("report", &netlist, &["--stamp", "filed under 42"]).stdout;
+    assert!((50_000..500_000).contains(&page.len()), "{}", page.len());
+    assert!(
+        String::from_utf8(page)
+            .unwrap()
+            .contains(">filed under 42<")
+    );
+}
+
+#[test]
+fn completions_know_every_verb() {
+    for shell in ["bash", "zsh", "fish"] {
+        let output = pulsewright().args(["completions", shell]).output().unwrap();
+        assert_eq!(output.status.code(), Some(0), "{shell}");
+        for verb in ["fire", "judge", "chart", "report", "--between", "--verify"] {
+            let bare = verb.trim_start_matches('-');
+            assert!(out(&output).contains(bare), "{shell}: {verb}");
+        }
+    }
+    let output = pulsewright()
+        .args(["completions", "cobol"])
+        .output()
+        .unwrap();
+    assert_eq!(output.status.code(), Some(2));
+}
+
+#[test]
+fn manual_pages_are_written_for_every_verb() {
+    let folder = folder();
+    let write = || {
+        let output = pulsewright()
+            .arg("pages")
+            .arg(folder.path())
+            .output()
+            .unwrap();
+        assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+        fs::read_to_string(folder.path().join("pulsewright-chart.1")).unwrap()
+    };
+    let page = write();
+    assert!(page.contains("between") && page.contains("SVG"), "{page}");
+    assert_eq!(write(), page);
+    assert!(folder.path().join("pulsewright.1").exists());
+    assert!(!folder.path().join("pulsewright-pages.1").exists());
+    let gone = pulsewright()
+        .args(["pages", "no/such/folder"])
+        .output()
+        .unwrap();
+    assert_eq!(gone.status.code(), Some(3));
+}

@@ -172,6 +172,8 @@ fn readme_shows_what_the_command_prints() {
     let text = std::fs::read_to_string(repository().join("README.md")).unwrap();
     let examples = examples(&text);
     assert!(!examples.is_empty(), "README.md shows no example");
+    // Where examples write to; elsewhere than usual it may not be there yet.
+    std::fs::create_dir_all(repository().join("target")).unwrap();
     for example in examples {
         let printed = run(&example.command);
         assert!(

@@ -3,8 +3,10 @@
 //! ```text
 //! Fired, Judged, ──> record          JSON, one schema a kind and number
 //! Modes, Methods ──> table           text that fits the terminal
-//!                ──> waveform        CSV
+//!                ──> plot            SVG, or characters
 //!                ──> work_precision  SVG
+//!                ──> waveform        CSV
+//!                ──> page            one HTML file (feature `html`)
 //! ```
 //!
 //! Only this crate knows what a record or a table looks like, and it computes nothing: every
@@ -13,6 +15,9 @@
 
 pub mod look;
 pub mod number;
+#[cfg(feature = "html")]
+pub mod page;
+pub mod plot;
 pub mod record;
 pub mod table;
 pub mod waveform;

@@ -126,6 +126,12 @@ impl Scale {
         &self.suffix
     }
 
+    /// What values are divided by to be shown before [`Scale::suffix`].
+    #[must_use]
+    pub fn divisor(&self) -> f64 {
+        10f64.powi(self.exponent)
+    }
+
     /// A value of this scale's unit, to the place of its bound (as many digits as it has where
     /// there is none).
     #[must_use]
@@ -148,7 +154,7 @@ impl Scale {
         let decimals = usize::try_from(self.exponent - place)
             .unwrap_or(0)
             .min(most);
-        let text = format!("{:.decimals$}", value.abs() / 10f64.powi(self.exponent));
+        let text = format!("{:.decimals$}", divided(value.abs(), self.exponent));
         let nothing = text.bytes().all(|b| matches!(b, b'0' | b'.'));
         if value < 0.0 && !nothing {
             format!("−{text}")
@@ -228,6 +234,15 @@ fn two_digits(bound: f64) -> Option<(u32, i32)> {
     })
 }
 
+/// `value / 10^exponent`, in two steps where that power is below what a number can hold.
+fn divided(value: f64, exponent: i32) -> f64 {
+    if exponent < -290 {
+        value * 1e290 / 10f64.powi(exponent + 290)
+    } else {
+        value / 10f64.powi(exponent)
+    }
+}
+
 /// `digits × 10^place`, read once from its decimal text so that it is the nearest number.
 fn power_of_ten(digits: u32, place: i32) -> f64 {
     format!("{digits}e{place}").parse().unwrap_or(f64::INFINITY)
@@ -275,6 +290,11 @@ mod tests {
             with_bound(0.882_352_9, 1.3e-8, ""),
             "0.882352900 ± 13 × 10⁻⁹"
         );
+    }
+
+    #[test]
+    fn the_smallest_numbers_have_digits() {
+        assert_eq!(brief(1e-320, "s", 3), "10 × 10⁻³²¹ s");
     }
 
     #[test]

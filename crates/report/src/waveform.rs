@@ -205,6 +205,7 @@ mod tests {
             times: vec![0.0, 1e-6, 1e-6, 3e-6],
             values: vec![0.0, 0.0, 4.0, 0.0],
             slopes: vec![0.0, 0.0, -4e6, 0.0],
+            ..Channel::default()
         }
     }
 

@@ -35,11 +35,7 @@ pub(crate) fn case_set(
 /// As for [`fire`](crate::fire); of several cases the first one's.
 pub fn judge(circuit: &Circuit, options: &Options<'_>) -> Result<Judged, StudyError> {
     let sets = circuit.case_sets(&options.held)?;
-    let options = Options {
-        stress: false,
-        ..options.clone()
-    };
-    let cases = fired(circuit, &sets, &options)?;
+    let cases = fired(circuit, &sets, options)?;
     let claims = summaries(circuit, &cases);
     Ok(Judged { cases, claims })
 }

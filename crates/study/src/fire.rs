@@ -15,6 +15,7 @@ use crate::claims::{Bounded, Judgement, Limits, expressions, judge, limits};
 use crate::error::StudyError;
 use crate::hazards::hazards;
 use crate::ladder::{Ladder, Turn};
+use crate::marks::{mark, windows};
 use crate::opinion::second_opinion;
 use crate::options::Options;
 use crate::outcome::{
@@ -79,6 +80,8 @@ pub(crate) fn run(
     let claims = judge.claims(&ladder.readings, ladder.rules)?;
     let balance = ladder.ledger.result(&setup, ladder.rules)?;
     let reader = Reader::new(case, &ladder.shot);
+    let mut channels = channels(&plan, &reader);
+    mark(&plan, &reader, &claims, &mut channels);
     Ok(Fired {
         set: settings(set),
         readings: named(&plan, &ladder),
@@ -101,7 +104,8 @@ pub(crate) fn run(
         defaults: circuit.defaults(),
         method: setup.method.words().to_owned(),
         span: setup.span,
-        channels: channels(&plan, &reader),
+        channels,
+        windows: windows(&plan, &reader),
         parts: setup.parts.iter().map(|p| p.name.clone()).collect(),
         changes: ladder
             .shot

@@ -19,6 +19,7 @@ mod events;
 mod fire;
 mod hazards;
 mod ladder;
+mod marks;
 mod methods;
 mod modes;
 mod opinion;

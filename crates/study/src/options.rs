@@ -27,7 +27,7 @@ pub struct Options<'a> {
     pub held: Vec<(String, LetValue)>,
     /// The case to fire in place of the nominal let-values, counted from 1; `fire` only.
     pub case: Option<usize>,
-    /// Whether `fire` also reads what each part had to stand.
+    /// Whether what each part had to stand is read as well.
     pub stress: bool,
     /// The channels in place of those that the netlist states.
     pub channels: Option<Vec<Expr>>,

@@ -253,6 +253,8 @@ pub struct Fired {
     pub shot: Shot,
     /// The channels read off the finest shot.
     pub channels: Vec<Channel>,
+    /// The windows of readings and claims that have one.
+    pub windows: Vec<WindowResult>,
     /// The names of the parts, for [`Event::part`].
     pub parts: Vec<String>,
     /// For each event, what happened in words (`closes`, `moves to pad`, `conducts`).
@@ -273,6 +275,38 @@ pub struct Channel {
     pub values: Vec<f64>,
     /// Slopes, for reading between the instants.
     pub slopes: Vec<f64>,
+    /// Its largest absolute value on this shot, with its sign; for plots, without a bound.
+    pub crest: Option<Extreme>,
+    /// Limits of claims on an extreme of it.
+    pub gates: Vec<Gate>,
+}
+
+/// A limit of a claim on an extreme of a channel, as a level across its plot.
+#[derive(Clone, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Gate {
+    /// The claim's name.
+    pub claim: String,
+    /// The level, in the channel's unit.
+    pub level: f64,
+    /// Whether the forbidden side is above the level; else it is below.
+    pub above: bool,
+    /// Whether no point of the channel may lie on that side; else only its extreme must not.
+    pub every: bool,
+    /// Where the claim looks: starts and ends, s.
+    pub intervals: Vec<(f64, f64)>,
+    /// The extreme that the claim is on, without a bound.
+    pub extreme: Extreme,
+}
+
+/// The window of a named reading or of a claim.
+#[derive(Clone, Debug, Default, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct WindowResult {
+    /// The reading's or the claim's name.
+    pub name: String,
+    /// Starts and ends, s, in order of time.
+    pub intervals: Vec<(f64, f64)>,
 }
 
 /// Every case, judged.

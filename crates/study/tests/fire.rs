@@ -771,3 +771,33 @@ fn rounding_is_no_disagreement() {
     let opinion = f.second_opinion.unwrap();
     assert_eq!(opinion.missing, None);
 }
+
+#[test]
+fn a_claim_on_the_extreme_of_a_channel_is_a_gate_on_it() {
+    let f = stage(
+        "channels current through chest, voltage across bank\n\
+         reading top = highest current through chest after 1 ms\n\
+         claim most: largest current through chest is at most 90 A\n\
+         claim least: top is at least 50 A\n\
+         claim other: largest voltage across chest is at most 90 kV\n",
+    );
+    let gates: Vec<_> = f.channels[0]
+        .gates
+        .iter()
+        .map(|g| (g.claim.as_str(), g.level, g.above, g.every))
+        .collect();
+    assert_eq!(
+        gates,
+        [
+            ("most", 90.0, true, true),
+            ("most", -90.0, false, true),
+            ("least", 50.0, false, false),
+        ]
+    );
+    assert!(f.channels[1].gates.is_empty());
+    let crest = f.channels[0].crest.unwrap();
+    assert_eq!(crest, f.channels[0].gates[0].extreme);
+    assert_eq!(f.channels[0].gates[2].intervals, [(1e-3, f.span)]);
+    assert_eq!(f.windows.len(), 1);
+    assert_eq!(f.windows[0].name, "top");
+}

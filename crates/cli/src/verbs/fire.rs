@@ -9,6 +9,7 @@ use crate::say;
 use crate::shell::Shell;
 use crate::trouble::Trouble;
 use pulsewright::report::number::{brief, quantity};
+use pulsewright::report::plot::{Plot, terminal};
 use pulsewright::report::{record, table};
 use pulsewright::{Fired, Netlist, Options, Settings};
 use std::path::Path;
@@ -36,7 +37,10 @@ pub fn fire(
     let text = if form.json {
         record::text(&record::fire(&fired, &origin))
     } else {
-        table::fire(&fired, &origin, shell.look)
+        let picture = shell
+            .ink
+            .map(|ink| terminal(&Plot::whole(&fired), shell.look, ink));
+        table::fire_with(&fired, &origin, shell.look, &picture.unwrap_or_default())
     };
     if form.json || shell.target != Target::Standard {
         say::remarks(shell, &netlist, &fired.remarks);

@@ -9,9 +9,26 @@ use crate::output::Target;
 use crate::say;
 use crate::shell::Shell;
 use crate::trouble::Trouble;
-use pulsewright::Options;
 use pulsewright::report::{record, table};
+use pulsewright::{Judged, Netlist, Options};
 use std::path::Path;
+
+/// Fires and judges every case until the last, or until a signal comes; on request with the stress
+/// on every part.
+pub fn every_case(netlist: &Netlist, stress: bool, shell: &Shell) -> Result<Judged, Trouble> {
+    if netlist.circuit().draft().claims.is_empty() {
+        return Err(Trouble::Mistakes(netlist.nothing_to_judge()));
+    }
+    let judged = watched(shell, |hook| {
+        netlist.judge(&Options {
+            stress,
+            hook: Some(hook),
+            ..netlist.options()
+        })
+    })?;
+    judged.cases.iter().for_each(|fired| details(shell, fired));
+    Ok(judged)
+}
 
 /// Judges every case and shows the verdicts.
 pub fn judge(
@@ -21,16 +38,7 @@ pub fn judge(
     shell: &Shell,
 ) -> Result<Ending, Trouble> {
     let netlist = input::netlist(file, settings, shell)?;
-    if netlist.circuit().draft().claims.is_empty() {
-        return Err(Trouble::Mistakes(netlist.nothing_to_judge()));
-    }
-    let judged = watched(shell, |hook| {
-        netlist.judge(&Options {
-            hook: Some(hook),
-            ..netlist.options()
-        })
-    })?;
-    judged.cases.iter().for_each(|fired| details(shell, fired));
+    let judged = every_case(&netlist, false, shell)?;
     let origin = netlist.origin();
     let text = if json {
         record::text(&record::judge(&judged, &origin))

@@ -99,7 +99,10 @@ fn pages(shell: &Shell) -> String {
     let mut out = String::new();
     heading(&mut out, shell.look, "verbs", Tone::Heading);
     let mut grid = Grid::new([Align::Left, Align::Text]);
-    for verb in Arguments::command().get_subcommands() {
+    for verb in Arguments::command()
+        .get_subcommands()
+        .filter(|v| !v.is_hide_set())
+    {
         let about = verb
             .get_about()
             .map(ToString::to_string)

@@ -1,6 +1,8 @@
 //! The verbs, one a file: from arguments to data and an ending.
 
+mod chart;
 mod check;
+mod completions;
 mod fire;
 mod judge;
 mod list;
@@ -8,6 +10,7 @@ mod manual;
 mod methods;
 mod modes;
 mod neaten;
+mod report;
 mod watch;
 mod waveform;
 
@@ -91,8 +94,22 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             case,
             every,
         } => waveform::waveform(&file, &settings.set, case.case, every.as_deref(), shell),
+        Verb::Chart {
+            file,
+            settings,
+            case,
+            between,
+        } => chart::chart(&file, &settings.set, case.case, between.as_deref(), shell),
+        Verb::Report {
+            file,
+            settings,
+            stamp,
+            verify,
+        } => report::report(&file, &settings.set, stamp, verify.as_deref(), shell),
         Verb::Neaten { files, check } => neaten::neaten(&files, check, shell),
         Verb::Manual { words } => manual::manual(&words, shell),
+        Verb::Completions { dialect } => completions::completions(dialect, shell),
+        Verb::Pages { folder } => completions::pages(&folder),
     };
     done.unwrap_or_else(|trouble| failed(shell, &trouble, json))
 }

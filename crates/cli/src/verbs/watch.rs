@@ -1,30 +1,83 @@
-//! A run that a signal can stop, and how far it was then.
+//! A run that a signal can stop, and how far it is.
+//!
+//! Where standard error is a terminal and the run takes longer than half a second, a line says how
+//! far it is; it is taken back before anything else is said.
 
+use crate::say;
 use crate::shell::Shell;
 use crate::trouble::Trouble;
 use pulsewright::Error;
 use pulsewright::report::number::brief;
 use pulsewright::study::{Hook, Progress};
 use std::sync::Mutex;
+use std::time::{Duration, Instant};
 
 /// Runs something under a hook that stops it when a signal comes.
 pub fn watched<T>(
     shell: &Shell,
     run: impl FnOnce(Hook<'_>) -> Result<T, Error>,
 ) -> Result<T, Trouble> {
-    let far: Mutex<Option<Progress>> = Mutex::new(None);
+    let far: Mutex<Far> = Mutex::new(Far::begin(shell));
     let hook = |progress: Progress| {
         if let Ok(mut far) = far.lock() {
-            *far = Some(progress);
+            far.reach(progress);
         }
         shell.stop.came().is_none()
     };
     let outcome = run(&hook);
+    let last = far.into_inner().ok().and_then(Far::end);
     match outcome {
-        Err(Error::Stopped { .. }) => Err(Trouble::Stopped(
-            far.into_inner().ok().flatten().map(in_words),
-        )),
+        Err(Error::Stopped { .. }) => Err(Trouble::Stopped(last.map(in_words))),
         other => other.map_err(Trouble::from),
+    }
+}
+
+/// How long a run may take before its progress is shown.
+const PATIENCE: Duration = Duration::from_millis(500);
+/// How often the line changes.
+const EVERY: Duration = Duration::from_millis(100);
+
+/// How far a run is, and what of it is on the terminal.
+struct Far {
+    last: Option<Progress>,
+    begun: Instant,
+    shown: Option<Instant>,
+    /// Columns of the terminal on standard error; none where there is no terminal.
+    columns: Option<usize>,
+}
+
+impl Far {
+    fn begin(shell: &Shell) -> Self {
+        Far {
+            last: None,
+            begun: Instant::now(),
+            shown: None,
+            columns: say::terminal_columns(shell),
+        }
+    }
+
+    /// Notes how far it is; now and then says so.
+    fn reach(&mut self, progress: Progress) {
+        self.last = Some(progress);
+        let Some(columns) = self.columns else {
+            return;
+        };
+        let due = match self.shown {
+            None => self.begun.elapsed() >= PATIENCE,
+            Some(shown) => shown.elapsed() >= EVERY,
+        };
+        if due {
+            self.shown = Some(Instant::now());
+            say::over(&format!("firing {}", in_words(progress)), columns);
+        }
+    }
+
+    /// Takes the line back.
+    fn end(self) -> Option<Progress> {
+        if let (Some(_), Some(columns)) = (self.shown, self.columns) {
+            say::over("", columns);
+        }
+        self.last
     }
 }
 

@@ -29,12 +29,12 @@ pub(super) fn balance(out: &mut String, look: Look, balance: &BalanceResult) {
 }
 
 /// The bound that the digits follow: the balance's, and no less than the rounding of the largest.
-fn least(balance: &BalanceResult) -> f64 {
+pub(crate) fn least(balance: &BalanceResult) -> f64 {
     let largest = entries(balance).fold(0.0, |a: f64, (_, joules)| a.max(joules.abs()));
     balance.bound.max(largest * 1e-8).max(f64::MIN_POSITIVE)
 }
 
-fn entries(balance: &BalanceResult) -> impl Iterator<Item = (String, f64)> + '_ {
+pub(crate) fn entries(balance: &BalanceResult) -> impl Iterator<Item = (String, f64)> + '_ {
     let start = [("stored at the start".to_owned(), balance.stored_start)];
     let supplied = balance
         .supplied

@@ -96,6 +96,6 @@ pub(super) fn asked(claim: &ClaimResult) -> String {
 }
 
 /// Why, where the numbers do not say it.
-pub(super) fn reason(claim: &ClaimResult) -> Option<&str> {
+pub(crate) fn reason(claim: &ClaimResult) -> Option<&str> {
     claim.reason.as_deref().or_else(|| why(&claim.answer))
 }

@@ -15,6 +15,12 @@ use pulsewright_study::outcome::Fired;
 /// What `fire` prints: readings, claims, events, balance, stress, hazards, remarks, defaults.
 #[must_use]
 pub fn fire(fired: &Fired, origin: &Origin<'_>, look: Look) -> String {
+    fire_with(fired, origin, look, "")
+}
+
+/// What `fire` prints on a terminal: the same, with a picture of the channels above the readings.
+#[must_use]
+pub fn fire_with(fired: &Fired, origin: &Origin<'_>, look: Look, picture: &str) -> String {
     let mut out = String::new();
     opening(&mut out, look, origin, &run(fired));
     if !fired.set.is_empty() {
@@ -27,6 +33,10 @@ pub fn fire(fired: &Fired, origin: &Origin<'_>, look: Look) -> String {
         );
     }
     hazards(&mut out, look, &fired.hazards);
+    if !picture.is_empty() {
+        out.push('\n');
+        out.push_str(picture);
+    }
     readings(&mut out, look, &fired.readings);
     claims(&mut out, look, &fired.claims);
     events(&mut out, look, fired);

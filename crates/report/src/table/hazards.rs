@@ -26,7 +26,7 @@ pub(super) fn hazards(out: &mut String, look: Look, hazards: &[Hazard]) {
 }
 
 /// Whether a hazard of the whole circuit says no more than one of its parts'.
-fn is_said(hazard: &Hazard, all: &[Hazard]) -> bool {
+pub(crate) fn is_said(hazard: &Hazard, all: &[Hazard]) -> bool {
     let same = |other: &Hazard| {
         Hazard {
             part: hazard.part.clone(),
@@ -37,7 +37,7 @@ fn is_said(hazard: &Hazard, all: &[Hazard]) -> bool {
 }
 
 /// `bank: up to 4.7 kV and 353.4 J; at most 60 V from 21.3 ms on`
-fn in_words(hazard: &Hazard) -> String {
+pub(crate) fn in_words(hazard: &Hazard) -> String {
     let energy = brief(hazard.energy, "J", DIGITS);
     if hazard.voltage == 0.0 {
         return format!("{}: up to {energy}", hazard.part);
@@ -60,7 +60,7 @@ fn in_words(hazard: &Hazard) -> String {
 }
 
 /// The worst of each part over several shots: highest voltage, most energy, latest instant.
-pub(super) fn worst<'a>(shots: impl IntoIterator<Item = &'a [Hazard]>) -> Vec<Hazard> {
+pub(crate) fn worst<'a>(shots: impl IntoIterator<Item = &'a [Hazard]>) -> Vec<Hazard> {
     let mut worst: Vec<Hazard> = Vec::new();
     for hazard in shots.into_iter().flatten() {
         match worst.iter_mut().find(|w| w.part == hazard.part) {

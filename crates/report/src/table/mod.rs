@@ -17,13 +17,21 @@ mod modes;
 mod opinion;
 mod stress;
 
-pub use fire::fire;
+pub use fire::{fire, fire_with};
 pub use grid::{Align, Cell, Grid};
 pub use hazards::CAUTIONS;
+#[cfg(feature = "html")]
+pub(crate) use hazards::in_words as hazard_in_words;
 pub use judge::judge;
 pub use list::list;
 pub use methods::methods;
 pub use modes::modes;
+#[cfg(feature = "html")]
+pub(crate) use {
+    balance::{entries, least},
+    claims::reason,
+    hazards::{is_said, worst},
+};
 
 use crate::look::{Look, Tone, paragraph};
 use crate::number;
@@ -82,6 +90,17 @@ pub fn set_in_words(set: &Set) -> String {
         SetValue::Circuit(words) => format!("{name} = {words}"),
     };
     set.iter().map(one).collect::<Vec<_>>().join(", ")
+}
+
+/// A circuit's title and what its case sets: `Field unit: load = 25 Ω`; empty where there is neither.
+#[must_use]
+pub fn titled(title: Option<&str>, set: &Set) -> String {
+    let set = set_in_words(set);
+    match title {
+        Some(title) if set.is_empty() => title.to_owned(),
+        Some(title) => format!("{title}: {set}"),
+        None => set,
+    }
 }
 
 /// Adds remarks, one a paragraph.

@@ -226,6 +226,7 @@ pub fn fired() -> Fired {
             unit: "V".to_owned(),
             ..Channel::default()
         }],
+        windows: Vec::new(),
         parts: vec!["bank".to_owned(), "fire".to_owned()],
         changes: vec!["closes".to_owned(), "opens".to_owned()],
     }

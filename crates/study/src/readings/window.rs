@@ -66,7 +66,7 @@ impl Extent {
 
 impl Reader<'_> {
     /// The window of a reading; `None` is the whole span.
-    pub(super) fn extent(&self, window: Option<&Window>) -> Result<Extent, Lack> {
+    pub(crate) fn extent(&self, window: Option<&Window>) -> Result<Extent, Lack> {
         let end = self.record.end();
         match window {
             None => Ok(self.over(0.0, end)),
