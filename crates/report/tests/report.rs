@@ -77,6 +77,7 @@ fn every_picture_and_table_has_a_name() {
     assert_eq!(count("<table"), count("<caption"));
     assert_eq!(count("<svg"), count("role=\"img\""));
     assert_eq!(count("<svg"), count("</title>\n<desc"));
+    assert!(page.contains(">Plot of case 1: load = 25 Ω</title>"));
 }
 
 #[test]

@@ -59,7 +59,7 @@ fn shot(index: usize, fired: &Fired) -> ShotView {
     let id = format!("case-{}", index + 1);
     let name = case_name(index, fired);
     let plot = Plot::whole(fired);
-    let drawn = figure(&plot, "", &id);
+    let drawn = figure(&plot, &format!("Plot of case {name}"), &id);
     let set = set_in_words(&fired.set);
     ShotView {
         heading: if set.is_empty() {

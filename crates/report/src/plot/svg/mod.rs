@@ -63,35 +63,21 @@ pub struct Figure {
 /// A plot as an SVG file.
 #[must_use]
 pub fn svg(plot: &Plot<'_>, title: &str) -> String {
-    picture(
-        plot,
-        title,
-        "plot",
-        &format!("<style>\n{SHEET}\n</style>\n"),
-    )
-    .svg
+    let mut sheet = Sheet::new(plot, "plot");
+    sheet.head(title);
+    sheet.draw();
+    sheet
+        .finish(title, &format!("<style>\n{SHEET}\n</style>\n"))
+        .svg
 }
 
 /// A plot as an SVG element of a page that holds [`SHEET`]; its ids begin with `id`, which is
-/// unique there.
+/// unique there. The title is read out, and not drawn: the page has a heading.
 #[must_use]
 pub fn figure(plot: &Plot<'_>, title: &str, id: &str) -> Figure {
-    picture(plot, title, id, "")
-}
-
-fn picture(plot: &Plot<'_>, title: &str, id: &str, style: &str) -> Figure {
-    let time = Axis::over(plot.from, plot.to, "s", 8);
-    let mut sheet = Sheet {
-        plot,
-        id,
-        time,
-        top: 10.0,
-        paper: Paper::default(),
-        panels: Vec::new(),
-        panel_of: Vec::new(),
-    };
-    sheet.draw(title);
-    sheet.finish(title, style)
+    let mut sheet = Sheet::new(plot, id);
+    sheet.draw();
+    sheet.finish(title, "")
 }
 
 /// A panel as laid out.
@@ -122,17 +108,33 @@ struct Sheet<'a, 'p> {
     panel_of: Vec<(usize, usize)>,
 }
 
-impl<'a> Sheet<'a, '_> {
+impl<'a, 'p> Sheet<'a, 'p> {
+    fn new(plot: &'p Plot<'a>, id: &'p str) -> Self {
+        Sheet {
+            plot,
+            id,
+            time: Axis::over(plot.from, plot.to, "s", 8),
+            top: 10.0,
+            paper: Paper::default(),
+            panels: Vec::new(),
+            panel_of: Vec::new(),
+        }
+    }
+
     fn x(&self, time: f64) -> f64 {
         LEFT + (RIGHT - LEFT) * self.time.share(time)
     }
 
-    fn draw(&mut self, title: &str) {
+    /// Draws the title.
+    fn head(&mut self, title: &str) {
         if !title.is_empty() {
             self.paper
                 .text("head", (LEFT, self.top + 12.0), &short(title, 92));
             self.top += 24.0;
         }
+    }
+
+    fn draw(&mut self) {
         let marks = event_marks(self, &events(self.plot));
         let label_top = self.top;
         self.top += ROW * marks.rows as f64 + if marks.rows > 0 { 4.0 } else { 0.0 };
