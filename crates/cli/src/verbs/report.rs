@@ -2,12 +2,14 @@
 
 use super::deliver;
 use super::judge::every_case;
+use super::watch::watched;
 use crate::exit::Ending;
 use crate::input;
 use crate::say;
 use crate::shell::Shell;
 use crate::trouble::Trouble;
-use pulsewright::report::page::{Difference, Extras, page, verify};
+use pulsewright::Options;
+use pulsewright::report::page::{Difference, Extras, modes_section, opinion_section, page, verify};
 use std::path::Path;
 
 /// Judges every case and writes the page, or compares it with one that was written.
@@ -30,8 +32,20 @@ pub fn report(
     };
     let netlist = input::netlist(file, settings, shell)?;
     let judged = every_case(&netlist, true, shell)?;
+    let modes = watched(shell, |hook| {
+        netlist.modes(&Options {
+            hook: Some(hook),
+            ..Options::default()
+        })
+    });
+    // Too many parts for modes leave the page without them; a signal leaves no page.
+    if let Err(Trouble::Stopped(_)) = modes {
+        return Err(Trouble::Stopped(None));
+    }
     let extras = Extras {
         stamp,
+        second_opinion: opinion_section(&judged),
+        modes: modes.ok().map(|m| modes_section(&m)),
         ..Extras::default()
     };
     let fresh = page(&judged, &netlist.origin(), &extras).map_err(Trouble::Broke)?;

@@ -12,10 +12,12 @@
 //! no date, path or name of a machine: the same input gives the same bytes.
 
 mod bars;
+mod sections;
 mod shot;
 mod verify;
 mod view;
 
+pub use sections::{modes_section, opinion_section};
 pub use verify::{Difference, verify};
 pub use view::{Cell, Section, Table};
 

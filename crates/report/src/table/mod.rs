@@ -27,6 +27,10 @@ pub use list::list;
 pub use methods::methods;
 pub use modes::modes;
 #[cfg(feature = "html")]
+pub(crate) use modes::{energy as energy_in_words, held as held_in_words, title as topology_title};
+#[cfg(feature = "html")]
+pub(crate) use opinion::opinion_in_words;
+#[cfg(feature = "html")]
 pub(crate) use {
     balance::{entries, least},
     claims::reason,

@@ -95,7 +95,7 @@ fn table(modes: &[NaturalMode], parts: &[String]) -> Grid {
 }
 
 /// `1 µs to 50 ms: fire closed`
-fn title(topology: &TopologyModes) -> String {
+pub(crate) fn title(topology: &TopologyModes) -> String {
     let times = format!("{} to {}", time(topology.from), time(topology.to));
     let states: Vec<String> = topology
         .states
@@ -125,7 +125,7 @@ fn shares<'a>(mode: &NaturalMode, parts: &'a [String]) -> Vec<(&'a str, f64)> {
 }
 
 /// `bank 50 %, choke 50 %`
-fn energy(mode: &NaturalMode, parts: &[String]) -> String {
+pub(crate) fn energy(mode: &NaturalMode, parts: &[String]) -> String {
     let all = shares(mode, parts);
     let percent = |share: f64| format!("{} %", brief(100.0 * share, "", 3));
     // One part too many is named as well: it takes no more room than `1 other`.
@@ -147,7 +147,7 @@ fn energy(mode: &NaturalMode, parts: &[String]) -> String {
 }
 
 /// What a mode that holds means.
-fn held(mode: &NaturalMode, parts: &[String]) -> String {
+pub(crate) fn held(mode: &NaturalMode, parts: &[String]) -> String {
     let names: Vec<&str> = shares(mode, parts).iter().map(|s| s.0).collect();
     let (names, keep) = match names.as_slice() {
         [] => (String::new(), "keeps its"),

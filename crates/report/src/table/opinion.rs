@@ -5,6 +5,15 @@ use pulsewright_study::outcome::{Fired, SecondOpinion};
 
 /// Adds the second opinion on one shot or on every case.
 pub(super) fn opinion(out: &mut String, look: Look, cases: &[Fired]) {
+    for said in opinion_in_words(cases) {
+        out.push('\n');
+        paragraph(out, look, 0, &said, Tone::Plain);
+    }
+}
+
+/// The sentences of it.
+pub(crate) fn opinion_in_words(cases: &[Fired]) -> Vec<String> {
+    let mut words = Vec::new();
     let asked: Vec<&SecondOpinion> = cases
         .iter()
         .filter_map(|c| c.second_opinion.as_ref())
@@ -16,24 +25,21 @@ pub(super) fn opinion(out: &mut String, look: Look, cases: &[Fired]) {
         format!(" on {} of {} cases", missing.len(), asked.len())
     };
     if let Some(why) = missing.first() {
-        out.push('\n');
-        let said = format!("no second opinion{of}: {why}");
-        paragraph(out, look, 0, &said, Tone::Plain);
+        words.push(format!("no second opinion{of}: {why}"));
     }
     let most = asked
         .iter()
         .filter_map(|o| Some((o, o.largest.as_ref()?)))
         .max_by(|a, b| a.1.share.total_cmp(&b.1.share));
     if let Some((opinion, most)) = most {
-        out.push('\n');
-        let said = format!(
+        words.push(format!(
             "second opinion: {} agrees; {} differs most, by {} of both bounds",
             opinion.method,
             most.reading,
             percent(most.share),
-        );
-        paragraph(out, look, 0, &said, Tone::Plain);
+        ));
     }
+    words
 }
 
 /// A share in percent, one digit where it is small.
