@@ -6,7 +6,7 @@ use crate::parts::{Control, PartKind, Switch};
 use crate::phrase::{Level, Measure, Phrase, Window};
 use crate::schedule::{Action, TriggerKind};
 use crate::slots;
-use crate::spread::{SpreadKind, Value};
+use crate::spread::Value;
 
 /// Calls `visit` on each expression that stands directly within this one.
 pub(crate) fn children<'a>(e: &'a Expr, visit: &mut dyn FnMut(&'a Expr)) {
@@ -202,16 +202,11 @@ fn relation<'a>(relation: &'a Relation, visit: &mut dyn FnMut(&'a Expr)) {
 
 fn value<'a>(value: &'a Value, visit: &mut dyn FnMut(&'a Expr)) {
     visit(&value.nominal);
-    match value.spread.as_ref().map(|s| &s.kind) {
-        Some(SpreadKind::Tolerance(e) | SpreadKind::Deviation(e) | SpreadKind::Lognormal(e)) => {
-            visit(e)
-        }
-        Some(SpreadKind::Limits(a, b)) => {
-            visit(a);
-            visit(b);
-        }
-        None => {}
-    }
+    let spread = value.spread.as_ref();
+    spread
+        .into_iter()
+        .flat_map(|s| s.kind.amounts())
+        .for_each(visit);
 }
 
 fn schedule<'a>(actions: &'a [Action], visit: &mut dyn FnMut(&'a Expr)) {
