@@ -151,6 +151,7 @@ pub(crate) fn all<'a>(draft: &'a Draft, visit: &mut dyn FnMut(&'a Expr)) {
     for claim in &draft.claims {
         visit(&claim.reading);
         claim.allowing.iter().for_each(&mut *visit);
+        claim.in_shots.iter().for_each(&mut *visit);
         relation(&claim.relation, visit);
         for condition in &claim.when {
             if let Applies::Compare { left, right, .. } = condition {
