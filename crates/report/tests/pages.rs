@@ -22,11 +22,21 @@ fn the_page_of_all_cases() {
 }
 
 #[test]
+fn the_page_of_a_study() {
+    insta::assert_snapshot!(table::spread(
+        &sample::spread(),
+        &sample::origin(),
+        look(80)
+    ));
+}
+
+#[test]
 fn pages_fit_their_width() {
     for width in [48, 60, 80, 120] {
         let pages = [
             table::fire(&sample::fired(), &sample::origin(), look(width)),
             table::judge(&sample::judged(), &sample::origin(), look(width)),
+            table::spread(&sample::spread(), &sample::origin(), look(width)),
         ];
         for line in pages.iter().flat_map(|p| p.lines()) {
             assert!(line.chars().count() <= width, "{width}: {line}");

@@ -20,9 +20,6 @@ use crate::readings::Reader;
 use crate::series::{Rules, Series};
 use crate::stress::Loads;
 
-/// Error of a step of the first mesh, over the scale of the states: coarse, but so that three
-/// halvings are mostly enough for a part in a million.
-const TOLERANCE: f64 = 5e-5;
 /// How often the first mesh is halved at least and at most.
 const LEAST: u32 = 3;
 const MOST: u32 = 12;
@@ -84,7 +81,7 @@ impl Ladder {
         let fixed = plan.case.setup.step;
         let mesh = fixed.map_or(
             Mesh::Chosen {
-                tolerance: TOLERANCE,
+                tolerance: plan.tolerance,
             },
             Mesh::Fixed,
         );

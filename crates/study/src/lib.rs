@@ -25,6 +25,7 @@ mod plan;
 pub mod readings;
 mod remarks;
 pub mod series;
+pub mod spread;
 mod stress;
 pub mod waveform;
 
@@ -34,3 +35,4 @@ pub use fire::fire;
 pub use options::{Hook, Options, Progress};
 pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict};
 pub use remarks::CODES;
+pub use spread::spread;

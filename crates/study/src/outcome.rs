@@ -2,6 +2,7 @@
 //!
 //! All numbers are in coherent SI units, every bound is absolute and in the same unit.
 
+use pulsewright_circuit::Stand;
 use pulsewright_circuit::dimension::Dimension;
 use pulsewright_engine::{Event, Shot};
 
@@ -104,7 +105,7 @@ pub struct ClaimResult {
 
 /// A let-value as set in a case.
 #[derive(Clone, Debug, PartialEq)]
-#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+#[cfg_attr(feature = "serde", derive(serde::Serialize, serde::Deserialize))]
 pub enum SetValue {
     /// A number with its unit.
     Number {
@@ -152,7 +153,7 @@ pub struct Stress {
 
 /// A stored-energy hazard.
 #[derive(Clone, Debug, PartialEq)]
-#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+#[cfg_attr(feature = "serde", derive(serde::Serialize, serde::Deserialize))]
 pub struct Hazard {
     /// The part, or `the circuit` for the energy of all.
     pub part: String,
@@ -205,6 +206,9 @@ pub struct Remark {
 pub struct Fired {
     /// The let-values that were set or varied.
     pub set: Set,
+    /// What the values that vary came to, where the shot was not fired at nominal ones.
+    #[cfg_attr(feature = "serde", serde(skip))]
+    pub stands: Vec<Stand>,
     /// The named readings, in the file's order.
     pub readings: Vec<ReadingResult>,
     /// The claims, in the file's order.

@@ -21,6 +21,12 @@ const STRESS_PARTS: usize = 200;
 /// Up to how many capacitors hazards are read at all; charged ones come first.
 const STORES: usize = 2000;
 
+/// Error of a step of the first mesh, over the scale of the states: coarse, but so that three
+/// halvings are mostly enough for a part in a million.
+const TOLERANCE: f64 = 5e-5;
+/// The same for the shots of a study, where a part in ten thousand is asked for.
+const DRAWN: f64 = 1e-3;
+
 /// What a case is fired for.
 pub struct Plan<'a> {
     /// The circuit with its numbers.
@@ -39,6 +45,8 @@ pub struct Plan<'a> {
     pub stores: Vec<(usize, f64)>,
     /// Whether they are watched in a shot of their own, there being many parts.
     pub stores_apart: bool,
+    /// Error of a step of the first mesh, over the scale of the states.
+    pub tolerance: f64,
 }
 
 impl<'a> Plan<'a> {
@@ -65,6 +73,25 @@ impl<'a> Plan<'a> {
             stress: options.stress && few,
             stores: stores(case),
             stores_apart: !few,
+            tolerance: TOLERANCE,
+        };
+        plan.record();
+        plan
+    }
+
+    /// What a shot of a study is fired for: its readings alone, from a coarser first mesh.
+    #[must_use]
+    pub fn of_readings(case: Case<'a>) -> Self {
+        let mut plan = Plan {
+            case,
+            readings: readings(case),
+            channels: Vec::new(),
+            probes: Vec::new(),
+            landings: Vec::new(),
+            stress: false,
+            stores: Vec::new(),
+            stores_apart: false,
+            tolerance: DRAWN,
         };
         plan.record();
         plan

@@ -15,6 +15,7 @@ mod judge;
 mod mistakes;
 mod reading;
 mod shot;
+mod spread;
 
 pub use finite::{Finite, Ordered};
 pub use fire::{FireRecord, fire};
@@ -25,6 +26,11 @@ pub use reading::{AnswerRecord, ClaimRecord, ReadingRecord};
 pub use shot::{
     BalanceRecord, EventRecord, ExtremeRecord, HazardRecord, RemarkRecord, StressRecord,
     TotalRecord,
+};
+
+pub use spread::{
+    DrawRecord, ReadingSpreadRecord, ShareRecord, SliceError, SliceRecord, SpreadCaseRecord,
+    SpreadRecord, SpreadVerdictRecord, joined, read_slice, slice, slice_text, spread,
 };
 
 use pulsewright_study::outcome::{Fired, Set, SetValue};
@@ -115,6 +121,17 @@ pub(crate) fn set_record(set: &Set) -> Ordered<SetRecord> {
     )
 }
 
+/// A record's let-value as results hold it.
+pub(crate) fn set_value(record: &SetRecord) -> SetValue {
+    match record {
+        SetRecord::Number { value, unit } => SetValue::Number {
+            value: value.map_or(f64::NAN, Finite::value),
+            unit: unit.clone(),
+        },
+        SetRecord::Circuit(words) => SetValue::Circuit(words.clone()),
+    }
+}
+
 /// How it was run.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 pub struct Run {
@@ -122,7 +139,7 @@ pub struct Run {
     pub method: String,
     /// How long the shot was followed, s.
     pub span: Option<Finite>,
-    /// Accepted steps of the finest shot; of all cases together under `judge`.
+    /// Accepted steps of the finest shot; of all shots together under `judge` and `spread`.
     pub steps: u64,
     /// The sizes of the steps, s.
     pub step: StepRecord,

@@ -3,7 +3,7 @@
 use super::claims::{asked, reason};
 use super::fire::{defaults, opening};
 use super::hazards::{hazards, worst};
-use super::{Align, Cell, Grid, bound_cell, remarks, set_in_words, tone};
+use super::{Align, Cell, Grid, bound_cell, counted, remarks, set_in_words, tone};
 use crate::look::{Look, Tone, heading, paragraph};
 use crate::number::{Scale, quantity};
 use crate::record::{Origin, unit_of};
@@ -191,7 +191,8 @@ fn summary(out: &mut String, look: Look, judged: &Judged) {
     }
     grid.write(out, look);
     out.push('\n');
-    let (line, tone) = total(judged);
+    let verdicts: Vec<Verdict> = judged.claims.iter().map(|c| c.verdict).collect();
+    let (line, tone) = total(&verdicts, &counted(judged.cases.len(), "case"));
     paragraph(out, look, 0, &line, tone);
 }
 
@@ -219,23 +220,12 @@ fn nearest(index: usize, fired: &Fired, k: usize) -> String {
 }
 
 /// The last line: `1 of 2 claims fails, over 7 cases`.
-fn total(judged: &Judged) -> (String, Tone) {
-    let count = |verdict| {
-        judged
-            .claims
-            .iter()
-            .filter(|c| c.verdict == verdict)
-            .count()
-    };
-    let (all, cases) = (
-        counted(judged.claims.len(), "claim"),
-        counted(judged.cases.len(), "case"),
-    );
+pub(super) fn total(verdicts: &[Verdict], over: &str) -> (String, Tone) {
+    let count = |verdict| verdicts.iter().filter(|v| **v == verdict).count();
+    let (all, cases) = (counted(verdicts.len(), "claim"), over);
     let (fails, undecided) = (count(Verdict::Fails), count(Verdict::Undecided));
     match (fails, undecided) {
-        (0, 0) if judged.claims.len() == 1 => {
-            (format!("the claim holds, over {cases}"), Tone::Good)
-        }
+        (0, 0) if verdicts.len() == 1 => (format!("the claim holds, over {cases}"), Tone::Good),
         (0, 0) => (format!("all {all} hold, over {cases}"), Tone::Good),
         (0, _) => (
             format!("{undecided} of {all} undecided and none fails, over {cases}"),
@@ -247,13 +237,5 @@ fn total(judged: &Judged) -> (String, Tone) {
             format!("of {all} {fails} failed and {undecided} undecided, over {cases}"),
             Tone::Bad,
         ),
-    }
-}
-
-fn counted(n: usize, word: &str) -> String {
-    if n == 1 {
-        format!("1 {word}")
-    } else {
-        format!("{n} {word}s")
     }
 }

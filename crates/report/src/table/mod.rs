@@ -12,6 +12,7 @@ mod grid;
 mod hazards;
 mod judge;
 mod list;
+mod spread;
 mod stress;
 
 pub use fire::fire;
@@ -19,11 +20,21 @@ pub use grid::{Align, Cell, Grid};
 pub use hazards::CAUTIONS;
 pub use judge::judge;
 pub use list::list;
+pub use spread::spread;
 
 use crate::look::{Look, Tone, paragraph};
 use crate::number;
 use crate::record::{RemarkRecord, unit_of};
 use pulsewright_study::outcome::{Answer, Found, Remark, Set, SetValue, Verdict};
+
+/// `1 case`, `7 cases`
+fn counted(n: usize, word: &str) -> String {
+    if n == 1 {
+        format!("1 {word}")
+    } else {
+        format!("{n} {word}s")
+    }
+}
 
 /// The tone of a verdict; the word says the same.
 fn tone(verdict: Verdict) -> Tone {

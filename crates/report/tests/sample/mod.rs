@@ -7,6 +7,9 @@ use pulsewright_study::outcome::{
     Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Extreme, Fired, Found, Hazard,
     Judged, ReadingResult, Remark, Set, SetValue, Stress, Verdict,
 };
+use pulsewright_study::spread::{
+    Bins, CaseTally, ClaimTally, ReadingTally, Spread, Sum, Tally, merge,
+};
 
 /// The text that the remark's span is in.
 pub const TEXT: &str = "title \"Field unit\"\nlet load = 50 ohm\n";
@@ -172,6 +175,7 @@ pub fn fired() -> Fired {
     };
     Fired {
         set: load(50.0),
+        stands: Vec::new(),
         readings: readings(),
         claims: vec![dose(311.86, Verdict::Holds), brief()],
         events: vec![
@@ -244,4 +248,66 @@ pub fn judged() -> Judged {
             },
         ],
     }
+}
+
+/// Forty draws of a stage in two cases, counted by hand: a claim on every shot, one on a share.
+pub fn tally(slice: [u64; 2]) -> Tally {
+    let claim = |name: &str, asked, holds, undecided| ClaimTally {
+        name: name.to_owned(),
+        text: "energy into chest".to_owned(),
+        relation: "is within 15 % of 300 J".to_owned(),
+        answers: vec!["REQ-12".to_owned()],
+        asked,
+        holds,
+        fails: 20 - holds - undecided,
+        undecided,
+    };
+    let mut reading = ReadingTally {
+        name: "dose".to_owned(),
+        text: "energy into chest".to_owned(),
+        unit: "J".to_owned(),
+        nominal: Some(300.0),
+        of: 0,
+        missing: 1,
+        bound: Some(0.0),
+        least: None,
+        most: None,
+        sum: Sum::default(),
+        squares: Sum::default(),
+        bins: Bins::default(),
+        against: vec![<[Sum; 3]>::default(); 2],
+    };
+    for draw in 1..20_u32 {
+        let p = f64::from(draw) / 10.0 - 1.0;
+        let found = value(300.0 + 40.0 * p, 1e-3);
+        reading.add(&found, draw.into(), &[Some(p), Some(p * p - 0.3)]);
+    }
+    let case = |ohms| CaseTally {
+        set: load(ohms),
+        claims: vec![
+            claim("dose", None, 18, 1),
+            claim("mostly", Some(0.5), 19, 0),
+        ],
+        readings: vec![reading.clone()],
+        hazards: fired().hazards,
+    };
+    Tally {
+        shots: 40,
+        seed: 1,
+        slice,
+        method: "trapezoidal rule".to_owned(),
+        span: 0.03,
+        defaults: vec!["start at rest".to_owned()],
+        steps: 1234,
+        smallest_step: Some(1e-9),
+        largest_step: Some(1e-4),
+        varying: vec!["bank".to_owned(), "choke winding".to_owned()],
+        cases: vec![case(25.0), case(50.0)],
+    }
+}
+
+/// The same as the whole that two slices make.
+pub fn spread() -> Spread {
+    let slices = vec![tally([1, 2]), tally([2, 2])];
+    Spread::from(merge(slices).unwrap_or_else(|_| tally([1, 1])))
 }
