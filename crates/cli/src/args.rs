@@ -13,7 +13,7 @@ use std::path::PathBuf;
     version,
     about = "Judges the pulse of a capacitor-discharge circuit against its requirements",
     long_about = LONG_ABOUT,
-    after_help = "example: pulsewright judge stage.shot\nmanual:  pulsewright manual",
+    after_help = "example: pulsewright judge stage.shot    manual: pulsewright manual",
     after_long_help = EXIT_CODES_AND_CAUTIONS,
     disable_help_subcommand = true,
     subcommand_value_name = "VERB",
@@ -74,6 +74,14 @@ pub struct Case {
     pub case: Option<u32>,
 }
 
+/// What draws come from.
+#[derive(Args, Clone, Copy, Debug, Default)]
+pub struct Seed {
+    /// The seed of the draws
+    #[arg(long, value_name = "S", default_value_t = 1)]
+    pub seed: u64,
+}
+
 /// The verbs.
 #[derive(Debug, Subcommand)]
 pub enum Verb {
@@ -129,8 +137,47 @@ pub enum Verb {
         #[arg(long)]
         json: bool,
     },
+    /// Draw over the tolerances: in what share of the shots each claim holds, and what matters
+    #[command(after_help = "examples:
+  pulsewright spread stage.shot --shots 10000
+  pulsewright spread stage.shot --shots 10000 --slice 3/7 -o part3.json
+  pulsewright merge part*.json")]
+    Spread {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        /// How many draws each case is fired with
+        #[arg(long, value_name = "N", value_parser = clap::value_parser!(u64).range(1..))]
+        shots: u64,
+        #[command(flatten)]
+        seed: Seed,
+        /// Fire the Ith of N parts of the draws, and print a record for `merge`
+        #[arg(long, value_name = "I/N")]
+        slice: Option<String>,
+        /// On how many threads; changes nothing but the time
+        #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..))]
+        threads: Option<u32>,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+    },
+    /// Join the records of the slices of a study to that of the whole
+    #[command(after_help = "example:\n  pulsewright merge part1.json part2.json part3.json --json")]
+    Merge {
+        /// Records that `spread --slice` wrote, each slice once, in any order
+        #[arg(required = true, value_name = "FILE")]
+        files: Vec<PathBuf>,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+    },
     /// Print the channels as CSV, at the run's own steps or evenly
-    #[command(after_help = "example:\n  pulsewright waveform stage.shot --every 10us -o pulse.csv")]
+    #[command(
+        after_help = "example:\n  pulsewright spread stage.shot --shots 10000 --seed 1
+  pulsewright waveform stage.shot --every 10us -o pulse.csv"
+    )]
     Waveform {
         /// A netlist; `-` is standard input
         #[arg(value_name = "FILE")]
@@ -177,7 +224,7 @@ const EXIT_CODES_AND_CAUTIONS: &str = "examples:
   pulsewright manual claim
 
 exit codes:
-  0    done; under judge and fire --strict every claim holds
+  0    done; under judge, spread, merge and fire --strict every claim holds
   1    some claim fails (neaten --check: some file is not in the canonical layout)
   2    the input is at fault: usage, netlist, a circuit without an answer, judge without claims
   3    the run broke: reading or writing, a limit, an internal error

@@ -433,3 +433,115 @@ fn a_signal_ends_a_run_with_its_code() {
         assert_eq!(fs::read_dir(folder.path()).unwrap().count(), 1);
     }
 }
+
+/// A divider whose yield is three quarters, in two cases of which the second draws the same.
+const DIVIDER: &str = r#"title "A supply"
+let load = 5 ohm
+voltage  feed from top to ground = 10 V, tolerance 10 %
+resistor path from top to ground = load, standard deviation 2 %
+span 1 ms
+cases load = 5 ohm, 10 ohm
+"#;
+
+fn divider(folder: &tempfile::TempDir, claim: &str) -> PathBuf {
+    let path = folder.path().join("divider.shot");
+    fs::write(&path, format!("{DIVIDER}{claim}\n")).unwrap();
+    path
+}
+
+const MOSTLY: &str =
+    "claim low: highest voltage across path is at most 10.5 V, in at least 50 % of shots";
+
+#[test]
+fn spread_ends_with_what_the_shares_say() {
+    for (claim, code) in [
+        (MOSTLY, 0),
+        (
+            "claim low: highest voltage across path is at most 10.5 V",
+            1,
+        ),
+        (
+            "claim low: highest voltage across path is at most 10.5 V, in at least 75 % of shots",
+            4,
+        ),
+        ("", 0),
+    ] {
+        let folder = folder();
+        let output = run("spread", &divider(&folder, claim), &["--shots", "60"]);
+        assert_eq!(
+            output.status.code(),
+            Some(code),
+            "{}{}",
+            out(&output),
+            messages(&output)
+        );
+        assert!(out(&output).lines().all(|l| l.chars().count() <= 80));
+    }
+}
+
+#[test]
+fn slices_merge_to_the_bytes_of_the_whole_on_any_threads() {
+    let folder = folder();
+    let path = divider(&folder, MOSTLY);
+    let spread = |more: &[&str]| {
+        let output = run(
+            "spread",
+            &path,
+            &[&["--shots", "40", "--seed", "9"], more].concat(),
+        );
+        assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+        output.stdout
+    };
+    let whole = spread(&["--json"]);
+    let mut merged = pulsewright();
+    merged.arg("merge").arg("--json");
+    for k in 1..=7 {
+        let (slice, threads) = (format!("{k}/7"), (1 + k % 2).to_string());
+        let part = folder.path().join(format!("part{k}.json"));
+        fs::write(&part, spread(&["--slice", &slice, "--threads", &threads])).unwrap();
+        merged.arg(part);
+    }
+    assert_eq!(merged.output().unwrap().stdout, whole);
+    assert_eq!(spread(&["--json", "--threads", "1"]), whole);
+}
+
+#[test]
+fn merge_says_which_slice_is_missing() {
+    let folder = folder();
+    let part = folder.path().join("part.json");
+    let path = divider(&folder, "");
+    let target = part.to_str().unwrap();
+    run(
+        "spread",
+        &path,
+        &["--shots", "4", "--slice", "1/2", "-o", target],
+    );
+    let output = run("merge", &part, &[]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        messages(&output).contains("slice 2 of 2 is missing"),
+        "{}",
+        messages(&output)
+    );
+    let output = run("merge", &path, &[]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        messages(&output).contains("it is no record"),
+        "{}",
+        messages(&output)
+    );
+}
+
+#[test]
+fn a_slice_is_one_of_its_number() {
+    let folder = folder();
+    for slice in ["0/7", "8/7", "3", "a/b"] {
+        let output = run(
+            "spread",
+            &divider(&folder, ""),
+            &["--shots", "5", "--slice", slice],
+        );
+        assert_eq!(output.status.code(), Some(2));
+        assert!(messages(&output).contains("which of how many slices"));
+    }
+}

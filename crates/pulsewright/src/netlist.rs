@@ -7,6 +7,7 @@ use pulsewright_circuit::{Circuit, LetValue, Lets};
 use pulsewright_netlist::{Mistakes, Source};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{Fired, Judged, Set, SetValue};
+use pulsewright_study::spread::{Draws, Tally};
 use pulsewright_study::{Options, StudyError};
 use sha2::{Digest, Sha256};
 
@@ -189,6 +190,32 @@ impl Netlist {
         pulsewright_study::judge(self.circuit(), options).map_err(|e| self.error(e))
     }
 
+    /// Fires the draws of a study over spreads. What is held is said in `options`, as for
+    /// [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// ```
+    /// use pulsewright::study::spread::{Draws, Spread};
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "voltage feed from top to ground = 10 V, tolerance 10 %
+    ///      resistor load from top to ground = 5 ohm
+    ///      span 1 ms
+    ///      claim low: highest voltage across load is at most 10.5 V, in at least 50 % of shots",
+    /// )?;
+    /// let draws = Draws { shots: 100, seed: 1, slice: [1, 1], threads: None };
+    /// let spread = Spread::from(netlist.spread(&netlist.options(), draws)?);
+    /// assert_eq!(spread.claims[0].1, pulsewright::Verdict::Holds);
+    /// # Ok::<(), pulsewright::Error>(())
+    /// ```
+    pub fn spread(&self, options: &Options<'_>, draws: Draws) -> Result<Tally, Error> {
+        pulsewright_study::spread(self.circuit(), options, draws).map_err(|e| self.error(e))
+    }
+
     /// Options that hold the let-values that this netlist was read with.
     #[must_use]
     pub fn options(&self) -> Options<'static> {
@@ -208,6 +235,10 @@ impl Netlist {
         match error {
             StudyError::Faults(faults) => Error::Mistakes(self.mistakes(faults)),
             StudyError::Cancelled { time } => Error::Stopped { time },
+            StudyError::InDraw { draw, seed, error } => match self.error(*error) {
+                Error::Broke(why) => Error::Broke(format!("draw {draw} with seed {seed}: {why}")),
+                other => other,
+            },
             StudyError::Engine(failure) => match fault::of(&failure, self.circuit()) {
                 Some(fault) => Error::Mistakes(self.mistakes(vec![fault])),
                 None => Error::Broke(failure.to_string()),

@@ -5,7 +5,9 @@ mod fire;
 mod judge;
 mod list;
 mod manual;
+mod merge;
 mod neaten;
+mod spread;
 mod watch;
 mod waveform;
 
@@ -25,6 +27,8 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Check { json: true, .. }
             | Verb::Fire { json: true, .. }
             | Verb::Judge { json: true, .. }
+            | Verb::Spread { json: true, .. }
+            | Verb::Merge { json: true, .. }
     );
     let done = match verb {
         Verb::Check {
@@ -55,6 +59,17 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             settings,
             json,
         } => judge::judge(&file, &settings.set, json, shell),
+        Verb::Spread {
+            file,
+            settings,
+            shots,
+            seed,
+            slice,
+            threads,
+            json,
+        } => spread::draws(shots, seed.seed, slice.as_deref(), threads)
+            .and_then(|draws| spread::spread(&file, &settings.set, draws, json, shell)),
+        Verb::Merge { files, json } => merge::merge(&files, json, shell),
         Verb::Waveform {
             file,
             settings,
