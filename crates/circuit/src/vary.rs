@@ -88,6 +88,18 @@ pub struct Stand {
     pub dimension: Dimension,
 }
 
+impl Stand {
+    /// A value as it stands.
+    #[must_use]
+    pub fn new(name: &str, value: f64, dimension: Dimension) -> Self {
+        Stand {
+            name: name.to_owned(),
+            value,
+            dimension,
+        }
+    }
+}
+
 /// A value with a spread, where it stands in the draft.
 pub(crate) struct Site<'a> {
     pub name: String,

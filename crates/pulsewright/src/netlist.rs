@@ -8,7 +8,7 @@ use pulsewright_netlist::{Mistakes, Source};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{Fired, Judged, Set, SetValue};
 use pulsewright_study::spread::{Draws, Tally};
-use pulsewright_study::{Options, StudyError};
+use pulsewright_study::{Options, StudyError, Worst};
 use sha2::{Digest, Sha256};
 
 /// Let-values given from outside, by name.
@@ -214,6 +214,16 @@ impl Netlist {
     /// ```
     pub fn spread(&self, options: &Options<'_>, draws: Draws) -> Result<Tally, Error> {
         pulsewright_study::spread(self.circuit(), options, draws).map_err(|e| self.error(e))
+    }
+
+    /// The worst corner of a claim over the tolerances with the let-values that `options` hold;
+    /// none where it does not apply there, or nothing varies.
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    pub fn corner(&self, options: &Options<'_>, claim: &str) -> Result<Option<Worst>, Error> {
+        pulsewright_study::corner(self.circuit(), options, claim).map_err(|e| self.error(e))
     }
 
     /// Options that hold the let-values that this netlist was read with.

@@ -22,6 +22,12 @@ fn the_page_of_all_cases() {
 }
 
 #[test]
+fn the_page_of_all_cases_at_their_worst_corners() {
+    let judged = sample::judged_at_corners();
+    insta::assert_snapshot!(table::judge(&judged, &sample::origin(), look(80)));
+}
+
+#[test]
 fn the_page_of_a_study() {
     insta::assert_snapshot!(table::spread(
         &sample::spread(),
@@ -36,6 +42,7 @@ fn pages_fit_their_width() {
         let pages = [
             table::fire(&sample::fired(), &sample::origin(), look(width)),
             table::judge(&sample::judged(), &sample::origin(), look(width)),
+            table::judge(&sample::judged_at_corners(), &sample::origin(), look(width)),
             table::spread(&sample::spread(), &sample::origin(), look(width)),
         ];
         for line in pages.iter().flat_map(|p| p.lines()) {

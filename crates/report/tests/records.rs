@@ -66,6 +66,16 @@ fn what_is_no_slice_is_refused() {
 }
 
 #[test]
+fn the_record_of_all_cases_at_their_worst_corners() {
+    let text = record::text(&judge(&sample::judged_at_corners(), &sample::origin()));
+    schema::check("pulsewright.judge-1.json", &text);
+    let back: JudgeRecord = serde_json::from_str(&text).unwrap();
+    assert_eq!(record::text(&back), text);
+    let value: serde_json::Value = serde_json::from_str(&text).unwrap();
+    insta::assert_json_snapshot!((&value["cases"][0]["worst"], &value["claims"][0]));
+}
+
+#[test]
 fn the_record_of_mistakes() {
     insta::assert_snapshot!(record::text(&mistakes()));
 }

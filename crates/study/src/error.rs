@@ -49,6 +49,12 @@ pub enum StudyError {
         /// Why.
         error: Box<StudyError>,
     },
+    /// A claim that the netlist does not make.
+    #[error("there is no claim `{claim}`")]
+    NoClaim {
+        /// The name asked for.
+        claim: String,
+    },
     /// The caller's hook asked to stop.
     #[error("stopped at {time} s")]
     Cancelled {

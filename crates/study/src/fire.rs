@@ -70,6 +70,15 @@ pub(crate) fn listed<'a>(
 /// known far less well, and verdicts are refined all the same.
 const ERROR: f64 = 1e-4;
 
+/// With what care a shot of a study is fired.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Care {
+    /// As one of many draws.
+    Drawn,
+    /// As a shot that is reported by itself.
+    Whole,
+}
+
 /// Fires one shot with values at positions within their spreads, for its readings and claims.
 pub(crate) fn measure(
     circuit: &Circuit,
@@ -77,16 +86,19 @@ pub(crate) fn measure(
     at: &Positions,
     options: &Options<'_>,
     turn: Turn,
+    care: Care,
 ) -> Result<Measured, StudyError> {
     let lets = circuit.lets_at(set, at)?;
     let mut setup = circuit.setup_at(&lets, at)?;
-    setup.error = setup.error.max(ERROR);
+    if care == Care::Drawn {
+        setup.error = setup.error.max(ERROR);
+    }
     let case = Case {
         circuit,
         setup: &setup,
         lets: &lets,
     };
-    let plan = Plan::of_readings(case);
+    let plan = Plan::of_readings(case, care == Care::Drawn);
     let judge = Judge {
         plan: &plan,
         applies: applying(&plan)?,

@@ -28,11 +28,12 @@ pub mod series;
 pub mod spread;
 mod stress;
 pub mod waveform;
+mod worst;
 
-pub use cases::judge;
+pub use cases::{corner, judge};
 pub use error::StudyError;
 pub use fire::fire;
 pub use options::{Hook, Options, Progress};
-pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict};
+pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict, Worst};
 pub use remarks::CODES;
 pub use spread::spread;

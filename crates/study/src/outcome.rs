@@ -2,8 +2,8 @@
 //!
 //! All numbers are in coherent SI units, every bound is absolute and in the same unit.
 
-use pulsewright_circuit::Stand;
 use pulsewright_circuit::dimension::Dimension;
+use pulsewright_circuit::{Positions, Stand};
 use pulsewright_engine::{Event, Shot};
 
 /// One reading's answer.
@@ -261,8 +261,23 @@ pub struct Channel {
 pub struct Judged {
     /// The cases in order, the last stated let-value running fastest; one where there are none.
     pub cases: Vec<Fired>,
+    /// For each case the claims at their worst corners: none for a claim that does not apply in
+    /// it, empty where no value has a spread.
+    #[cfg_attr(feature = "serde", serde(skip))]
+    pub worst: Vec<Vec<Option<Worst>>>,
     /// Each claim over all cases.
     pub claims: Vec<ClaimSummary>,
+}
+
+/// A claim at its worst corner over the tolerances.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Worst {
+    /// The claim there.
+    pub claim: ClaimResult,
+    /// Where the values stand within their spreads.
+    pub positions: Positions,
+    /// What they come to.
+    pub corner: Vec<Stand>,
 }
 
 /// A claim over all cases.
@@ -271,9 +286,11 @@ pub struct Judged {
 pub struct ClaimSummary {
     /// Its name.
     pub name: String,
-    /// Its verdict: `fails` where any case fails, else `undecided` where any is, else `holds`;
+    /// Its verdict, in each case that of its worst corner: `fails` where any case fails, else `undecided` where any is, else `holds`;
     /// `undecided` where it applies in no case.
     pub verdict: Verdict,
+    /// The same at nominal values.
+    pub nominal: Verdict,
     /// Index of the case with the least margin among those with the verdict.
     pub worst: Option<usize>,
 }

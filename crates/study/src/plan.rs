@@ -79,9 +79,10 @@ impl<'a> Plan<'a> {
         plan
     }
 
-    /// What a shot of a study is fired for: its readings alone, from a coarser first mesh.
+    /// What a shot of a study is fired for: its readings alone, as one of many from a coarser
+    /// first mesh.
     #[must_use]
-    pub fn of_readings(case: Case<'a>) -> Self {
+    pub fn of_readings(case: Case<'a>, is_one_of_many: bool) -> Self {
         let mut plan = Plan {
             case,
             readings: readings(case),
@@ -91,7 +92,7 @@ impl<'a> Plan<'a> {
             stress: false,
             stores: Vec::new(),
             stores_apart: false,
-            tolerance: DRAWN,
+            tolerance: if is_one_of_many { DRAWN } else { TOLERANCE },
         };
         plan.record();
         plan

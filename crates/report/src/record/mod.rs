@@ -19,7 +19,7 @@ mod spread;
 
 pub use finite::{Finite, Ordered};
 pub use fire::{FireRecord, fire};
-pub use judge::{CaseRecord, JudgeRecord, SummaryRecord, WorstRecord, judge};
+pub use judge::{CaseRecord, CornerRecord, JudgeRecord, SummaryRecord, WorstRecord, judge};
 pub use mistakes::{Bytes, MistakeRecord, MistakesRecord};
 pub(crate) use reading::unit as unit_of;
 pub use reading::{AnswerRecord, ClaimRecord, ReadingRecord};
@@ -33,6 +33,7 @@ pub use spread::{
     SpreadRecord, SpreadVerdictRecord, joined, read_slice, slice, slice_text, spread,
 };
 
+use pulsewright_circuit::Stand;
 use pulsewright_study::outcome::{Fired, Set, SetValue};
 use serde::{Deserialize, Serialize};
 
@@ -119,6 +120,12 @@ pub(crate) fn set_record(set: &Set) -> Ordered<SetRecord> {
             .map(|(name, value)| (name.clone(), record(value)))
             .collect(),
     )
+}
+
+/// What values that vary came to, in coherent SI units.
+pub(crate) fn stands(all: &[Stand]) -> Ordered<Finite> {
+    let number = |s: &Stand| Some((s.name.clone(), Finite::new(s.value)?));
+    Ordered(all.iter().filter_map(number).collect())
 }
 
 /// A record's let-value as results hold it.

@@ -5,7 +5,7 @@ use super::claims::{claims, readings};
 use super::events::events;
 use super::hazards::hazards;
 use super::stress::stress;
-use super::{remarks, set_in_words};
+use super::{remarks, set_in_words, stands_in_words};
 use crate::look::{Look, Tone, heading, paragraph};
 use crate::number::{brief, quantity};
 use crate::record::Origin;
@@ -24,6 +24,10 @@ pub fn fire(fired: &Fired, origin: &Origin<'_>, look: Look) -> String {
             &format!("with {}", set_in_words(&fired.set)),
             Tone::Plain,
         );
+    }
+    if !fired.stands.is_empty() {
+        let at = format!("at {}", stands_in_words(&fired.stands));
+        paragraph(&mut out, look, 0, &at, Tone::Plain);
     }
     hazards(&mut out, look, &fired.hazards);
     readings(&mut out, look, &fired.readings);

@@ -25,6 +25,7 @@ pub use spread::spread;
 use crate::look::{Look, Tone, paragraph};
 use crate::number;
 use crate::record::{RemarkRecord, unit_of};
+use pulsewright_circuit::Stand;
 use pulsewright_study::outcome::{Answer, Found, Remark, Set, SetValue, Verdict};
 
 /// `1 case`, `7 cases`
@@ -88,6 +89,15 @@ pub fn set_in_words(set: &Set) -> String {
         SetValue::Circuit(words) => format!("{name} = {words}"),
     };
     set.iter().map(one).collect::<Vec<_>>().join(", ")
+}
+
+/// `bank = 34.2 µF, choke winding = 9.9 Ω`
+fn stands_in_words(stands: &[Stand]) -> String {
+    let one = |s: &Stand| {
+        let value = number::brief(s.value, &s.dimension.unit(), 6);
+        format!("{} = {value}", s.name)
+    };
+    stands.iter().map(one).collect::<Vec<_>>().join(", ")
 }
 
 /// Adds remarks, one a paragraph.

@@ -1,11 +1,11 @@
 //! A hand-made result with one of everything, so that pages and records need no run.
 
-use pulsewright_circuit::{Dimension, Span};
+use pulsewright_circuit::{Dimension, Span, Stand};
 use pulsewright_engine::{Event, Shot};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{
     Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Extreme, Fired, Found, Hazard,
-    Judged, ReadingResult, Remark, Set, SetValue, Stress, Verdict,
+    Judged, ReadingResult, Remark, Set, SetValue, Stress, Verdict, Worst,
 };
 use pulsewright_study::spread::{
     Bins, CaseTally, ClaimTally, ReadingTally, Spread, Sum, Tally, merge,
@@ -235,19 +235,47 @@ pub fn judged() -> Judged {
             case(25.0, 263.314_285_7, Verdict::Holds),
             case(150.0, 345.597_879_6, Verdict::Fails),
         ],
+        worst: Vec::new(),
         claims: vec![
             ClaimSummary {
                 name: "dose".to_owned(),
                 verdict: Verdict::Fails,
+                nominal: Verdict::Fails,
                 worst: Some(1),
             },
             ClaimSummary {
                 name: "brief".to_owned(),
                 verdict: Verdict::Fails,
+                nominal: Verdict::Fails,
                 worst: Some(0),
             },
         ],
     }
+}
+
+/// The same with the dose at its worst corner, where it fails in the first case too.
+pub fn judged_at_corners() -> Judged {
+    let corner = |joules, farads| {
+        Some(Worst {
+            claim: dose(joules, Verdict::Fails),
+            positions: [-1.0, 1.0].into_iter().collect(),
+            corner: vec![
+                stand("bank", farads, Dimension::FARAD),
+                stand("choke winding", 10.5, Dimension::OHM),
+            ],
+        })
+    };
+    let mut judged = judged();
+    judged.worst = vec![
+        vec![corner(210.5, 30.4e-6), None],
+        vec![corner(390.25, 33.6e-6), None],
+    ];
+    judged.claims[0].nominal = Verdict::Holds;
+    judged
+}
+
+fn stand(name: &str, value: f64, dimension: Dimension) -> Stand {
+    Stand::new(name, value, dimension)
 }
 
 /// Forty draws of a stage in two cases, counted by hand: a claim on every shot, one on a share.

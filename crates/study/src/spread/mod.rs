@@ -34,7 +34,7 @@ use pulsewright_circuit::vary::Law;
 use pulsewright_circuit::{Circuit, Dimension, LetValue};
 
 use crate::error::StudyError;
-use crate::fire::{Measured, measure, run};
+use crate::fire::{Care, Measured, measure, run};
 use crate::ladder::Turn;
 use crate::options::Options;
 use crate::outcome::{Answer, Fired, Found};
@@ -157,7 +157,7 @@ impl Study<'_> {
                 case: before + k + 1,
                 of,
             };
-            let shot = measure(self.circuit, set, &at, self.options, turn)
+            let shot = measure(self.circuit, set, &at, self.options, turn, Care::Drawn)
                 .map_err(|e| e.in_draw(draw, self.draws.seed))?;
             case.add(&shot, draw, at.as_slice());
             tally.steps = tally.steps.saturating_add(shot.steps);
