@@ -74,6 +74,23 @@ pub struct Case {
     pub case: Option<u32>,
 }
 
+/// One shot of many in place of the nominal one.
+#[derive(Args, Clone, Debug, Default)]
+pub struct Which {
+    /// The case.
+    #[command(flatten)]
+    pub case: Case,
+    /// Take the Kth draw of `spread`, from 1, in place of nominal values
+    #[arg(long, value_name = "K", value_parser = clap::value_parser!(u64).range(1..), conflicts_with = "corner")]
+    pub draw: Option<u64>,
+    /// What it comes from.
+    #[command(flatten)]
+    pub seed: Seed,
+    /// Take the worst corner of a claim over the tolerances
+    #[arg(long, value_name = "CLAIM")]
+    pub corner: Option<String>,
+}
+
 /// What draws come from.
 #[derive(Args, Clone, Copy, Debug, Default)]
 pub struct Seed {
@@ -117,7 +134,7 @@ pub enum Verb {
         #[command(flatten)]
         settings: Settings,
         #[command(flatten)]
-        case: Case,
+        which: Which,
         /// Print a record in place of tables
         #[arg(long)]
         json: bool,
@@ -185,7 +202,7 @@ pub enum Verb {
         #[command(flatten)]
         settings: Settings,
         #[command(flatten)]
-        case: Case,
+        which: Which,
         /// A row every so often (`1us`), in place of the run's own steps
         #[arg(long, value_name = "TIME")]
         every: Option<String>,

@@ -545,3 +545,71 @@ fn a_slice_is_one_of_its_number() {
         assert!(messages(&output).contains("which of how many slices"));
     }
 }
+
+#[test]
+fn a_draw_of_a_study_is_fired_again() {
+    let folder = folder();
+    let path = divider(
+        &folder,
+        "claim low: highest voltage across path is at most 10.5 V",
+    );
+    let study = record(&run(
+        "spread",
+        &path,
+        &["--shots", "30", "--seed", "5", "--json"],
+    ));
+    let most = &study["cases"][1]["readings"][0]["most"];
+    let draw = most["draw"].to_string();
+    let again = ["--case", "2", "--draw", &draw, "--seed", "5", "--json"];
+    let fired = record(&run("fire", &path, &again));
+    let (a, b) = (
+        most["value"].as_f64().unwrap(),
+        fired["claims"][0]["value"].as_f64().unwrap(),
+    );
+    assert!((a - b).abs() < 1e-9 * a, "{a} {b}");
+    assert!(fired["values"]["feed"].as_f64().unwrap() > 10.5);
+    let page = out(&run("fire", &path, &["--draw", &draw, "--seed", "5"]));
+    assert!(page.contains("at feed = "), "{page}");
+}
+
+#[test]
+fn the_worst_corner_of_a_claim_is_fired_again() {
+    let folder = folder();
+    let path = divider(
+        &folder,
+        "claim low: highest voltage across path is at most 10.5 V",
+    );
+    let judged = run("judge", &path, &["--json"]);
+    assert_eq!(judged.status.code(), Some(1));
+    let claim = &record(&judged)["claims"][0];
+    assert_eq!(
+        (claim["verdict"].as_str(), claim["nominal"].as_str()),
+        (Some("fails"), Some("holds"))
+    );
+    assert!((claim["worst"]["corner"]["feed"].as_f64().unwrap() - 11.0).abs() < 1e-9);
+    let fired = run("fire", &path, &["--corner", "low", "--strict", "--json"]);
+    assert_eq!(fired.status.code(), Some(1), "{}", messages(&fired));
+    assert_eq!(
+        record(&fired)["claims"][0]["value"],
+        claim["worst"]["value"]
+    );
+    let rows = out(&run("waveform", &path, &["--corner", "low"]));
+    assert!(rows.contains(",11.0") || rows.contains(",11"), "{rows}");
+    let unknown = run("fire", &path, &["--corner", "lwo"]);
+    assert_eq!(unknown.status.code(), Some(2));
+    assert!(
+        messages(&unknown).contains("the claims are low"),
+        "{}",
+        messages(&unknown)
+    );
+}
+
+#[test]
+fn without_a_spread_there_is_neither_draw_nor_corner() {
+    let folder = folder();
+    for more in [["--draw", "3"], ["--corner", "dose"]] {
+        let output = run("fire", &stage(&folder, HOLDS), &more);
+        assert_eq!(output.status.code(), Some(2));
+        assert!(messages(&output).contains("no value of the netlist has a spread"));
+    }
+}

@@ -44,13 +44,13 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Fire {
             file,
             settings,
-            case,
+            which,
             json,
             strict,
         } => fire::fire(
             &file,
             &settings.set,
-            case.case,
+            &which,
             fire::Form { json, strict },
             shell,
         ),
@@ -73,9 +73,9 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Waveform {
             file,
             settings,
-            case,
+            which,
             every,
-        } => waveform::waveform(&file, &settings.set, case.case, every.as_deref(), shell),
+        } => waveform::waveform(&file, &settings.set, &which, every.as_deref(), shell),
         Verb::Neaten { files, check } => neaten::neaten(&files, check, shell),
         Verb::Manual { words } => manual::manual(&words, shell),
     };
