@@ -3,7 +3,7 @@
 //! The words are the manual's: a verb, its files, and options that mean the same for every
 //! verb that has them.
 
-use clap::{Args, Parser, Subcommand, ValueEnum};
+use clap::{ArgAction, Args, Parser, Subcommand, ValueEnum};
 use std::path::PathBuf;
 
 /// The command.
@@ -18,6 +18,7 @@ use std::path::PathBuf;
     disable_help_subcommand = true,
     subcommand_value_name = "VERB",
     subcommand_help_heading = "Verbs",
+    disable_version_flag = true,
     arg_required_else_help = true,
     max_term_width = 100
 )]
@@ -45,6 +46,9 @@ pub struct Common {
     /// Colour what is printed
     #[arg(long, value_enum, value_name = "WHEN", default_value_t = Colour::Auto, global = true)]
     pub color: Colour,
+    /// Print version
+    #[arg(short = 'V', long, action = ArgAction::Version, hide_short_help = true)]
+    pub version: Option<bool>,
 }
 
 /// When to colour.
@@ -189,6 +193,15 @@ pub enum Verb {
         /// Print a record in place of tables
         #[arg(long)]
         json: bool,
+    },
+    /// Print every case as CSV: its let-values and its readings
+    #[command(after_help = "example:\n  pulsewright table stage.shot -o doses.csv")]
+    Table {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
     },
     /// Print the channels as CSV, at the run's own steps or evenly
     #[command(

@@ -605,6 +605,27 @@ fn the_worst_corner_of_a_claim_is_fired_again() {
 }
 
 #[test]
+fn a_table_has_a_row_a_case() {
+    let folder = folder();
+    let text = "cases load = 50 ohm, open circuit\nreading dose = energy into chest";
+    let output = run("table", &stage(&folder, text), &[]);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    let text = out(&output);
+    let rows: Vec<Vec<&str>> = text.lines().map(|l| l.split(',').collect()).collect();
+    assert_eq!(rows[0], ["load (ohm)", "crest (A)", "dose (J)"]);
+    let number = |cell: &str| cell.parse::<f64>().unwrap();
+    assert_eq!(number(rows[1][0]), 50.0);
+    assert!((number(rows[1][1]) - 100.0).abs() < 1e-3);
+    assert!((number(rows[1][2]) - 400.0).abs() < 1e-3);
+    assert_eq!(
+        (rows[2][0], number(rows[2][2]), rows.len()),
+        ("open circuit", 0.0, 3)
+    );
+    let nothing = run("table", &PathBuf::from("-"), &[]);
+    assert_eq!(nothing.status.code(), Some(2));
+}
+
+#[test]
 fn without_a_spread_there_is_neither_draw_nor_corner() {
     let folder = folder();
     for more in [["--draw", "3"], ["--corner", "dose"]] {

@@ -16,7 +16,7 @@ pub use pulsewright_study as study;
 pub use pulsewright_circuit::{Circuit, Draft, LetValue};
 pub use pulsewright_netlist::Mistakes;
 pub use pulsewright_study::outcome::{Fired, Found, Judged, Verdict};
-pub use pulsewright_study::{Options, StudyError, corner, fire, judge, spread};
+pub use pulsewright_study::{Options, StudyError, corner, fire, fire_cases, judge, spread};
 
 /// Reads a netlist into a circuit.
 ///

@@ -181,6 +181,16 @@ impl Netlist {
         pulsewright_study::fire(self.circuit(), options).map_err(|e| self.error(e))
     }
 
+    /// Fires every case at nominal values. What is held is said in `options`, as for
+    /// [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    pub fn fire_cases(&self, options: &Options<'_>) -> Result<Vec<Fired>, Error> {
+        pulsewright_study::fire_cases(self.circuit(), options).map_err(|e| self.error(e))
+    }
+
     /// Judges every case. What is held is said in `options`, as for [`Netlist::fire`].
     ///
     /// # Errors

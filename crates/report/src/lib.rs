@@ -3,13 +3,14 @@
 //! ```text
 //! Fired, Judged ──> record    JSON, one schema a kind and number
 //!               ──> table     text that fits the terminal
-//!               ──> waveform  CSV
+//!               ──> waveform, cases  CSV
 //! ```
 //!
 //! Only this crate knows what a record or a table looks like, and it computes nothing: every
 //! number it prints was found earlier. It touches no files, no terminal and no clock; the same
 //! input gives the same bytes.
 
+pub mod cases;
 pub mod look;
 pub mod number;
 pub mod record;

@@ -37,6 +37,13 @@ fn the_page_of_a_study() {
 }
 
 #[test]
+fn cases_by_readings() {
+    let mut out = Vec::new();
+    pulsewright_report::cases::cases(&sample::judged().cases, &mut out).unwrap();
+    insta::assert_snapshot!(String::from_utf8(out).unwrap());
+}
+
+#[test]
 fn pages_fit_their_width() {
     for width in [48, 60, 80, 120] {
         let pages = [

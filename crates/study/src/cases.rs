@@ -39,11 +39,17 @@ pub(crate) fn case_set(
 /// As for [`fire`](crate::fire); of several cases the first one's.
 pub fn judge(circuit: &Circuit, options: &Options<'_>) -> Result<Judged, StudyError> {
     let sets = circuit.case_sets(&options.held)?;
-    let options = Options {
+    let options = &Options {
         stress: false,
+        at: Positions::nominal(),
         ..options.clone()
     };
-    let judged = fired(circuit, &sets, &options)?;
+    let one = |set: &CaseSet, turn: Turn| {
+        let nominal = run(circuit, set, options, turn)?;
+        let worst = Search::new(circuit, set, options, turn).all(&nominal.claims)?;
+        Ok((nominal, worst))
+    };
+    let judged: Vec<OneCase> = side_by_side(&sets, &one)?;
     let (cases, mut worst): (Vec<Fired>, Vec<_>) = judged.into_iter().unzip();
     if worst.iter().flatten().all(Option::is_none) {
         worst.clear();
@@ -56,18 +62,28 @@ pub fn judge(circuit: &Circuit, options: &Options<'_>) -> Result<Judged, StudyEr
     })
 }
 
-fn fired(
-    circuit: &Circuit,
-    sets: &[CaseSet],
-    options: &Options<'_>,
-) -> Result<Vec<OneCase>, StudyError> {
-    let of = sets.len();
-    let one = |k: usize, set: &CaseSet| -> Result<OneCase, StudyError> {
-        let turn = Turn { case: k + 1, of };
-        let nominal = run(circuit, set, options, turn)?;
-        let worst = Search::new(circuit, set, options, turn).all(&nominal.claims)?;
-        Ok((nominal, worst))
+/// Fires every case at nominal values.
+///
+/// # Errors
+///
+/// As for [`fire`](crate::fire); of several cases the first one's.
+pub fn fire_cases(circuit: &Circuit, options: &Options<'_>) -> Result<Vec<Fired>, StudyError> {
+    let sets = circuit.case_sets(&options.held)?;
+    let options = &Options {
+        at: Positions::nominal(),
+        ..options.clone()
     };
+    side_by_side(&sets, &|set, turn| run(circuit, set, options, turn))
+}
+
+/// Does something in every case, on the machine's threads; the outcomes in order, or the first
+/// error.
+fn side_by_side<T: Send>(
+    sets: &[CaseSet],
+    does: &(dyn Fn(&CaseSet, Turn) -> Result<T, StudyError> + Sync),
+) -> Result<Vec<T>, StudyError> {
+    let of = sets.len();
+    let one = |k: usize, set: &CaseSet| does(set, Turn { case: k + 1, of });
     let threads = std::thread::available_parallelism()
         .map_or(1, usize::from)
         .min(of);
@@ -79,7 +95,7 @@ fn fired(
             .collect();
     }
     let (next, stop) = (AtomicUsize::new(0), AtomicUsize::new(usize::MAX));
-    let done: Vec<Mutex<Option<Result<OneCase, StudyError>>>> =
+    let done: Vec<Mutex<Option<Result<T, StudyError>>>> =
         sets.iter().map(|_| Mutex::new(None)).collect();
     std::thread::scope(|scope| {
         for _ in 0..threads {

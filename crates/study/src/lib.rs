@@ -30,7 +30,7 @@ mod stress;
 pub mod waveform;
 mod worst;
 
-pub use cases::{corner, judge};
+pub use cases::{corner, fire_cases, judge};
 pub use error::StudyError;
 pub use fire::fire;
 pub use options::{Hook, Options, Progress};

@@ -239,6 +239,15 @@ pub struct Fired {
     pub changes: Vec<String>,
 }
 
+impl Fired {
+    /// Every answer by name: named readings, then the readings of claims, but of a claim that
+    /// shares its name with the reading it is on; each with the reading as the language writes
+    /// it.
+    pub fn answers(&self) -> impl Iterator<Item = (&str, &str, &Answer)> {
+        crate::fire::listed(&self.readings, &self.claims)
+    }
+}
+
 /// A channel: a signal along the shot.
 #[derive(Clone, Debug, Default, PartialEq)]
 #[cfg_attr(feature = "serde", derive(serde::Serialize))]

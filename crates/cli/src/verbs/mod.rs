@@ -8,6 +8,7 @@ mod manual;
 mod merge;
 mod neaten;
 mod spread;
+mod table;
 mod watch;
 mod waveform;
 
@@ -69,6 +70,7 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             json,
         } => spread::draws(shots, seed.seed, slice.as_deref(), threads)
             .and_then(|draws| spread::spread(&file, &settings.set, draws, json, shell)),
+        Verb::Table { file, settings } => table::table(&file, &settings.set, shell),
         Verb::Merge { files, json } => merge::merge(&files, json, shell),
         Verb::Waveform {
             file,

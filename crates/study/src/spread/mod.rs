@@ -31,7 +31,7 @@ use std::sync::Mutex;
 use std::sync::atomic::{AtomicU64, Ordering};
 
 use pulsewright_circuit::vary::Law;
-use pulsewright_circuit::{Circuit, Dimension, LetValue};
+use pulsewright_circuit::{Circuit, Dimension, LetValue, Positions};
 
 use crate::error::StudyError;
 use crate::fire::{Care, Measured, measure, run};
@@ -189,6 +189,7 @@ fn blank(
 ) -> Result<Tally, StudyError> {
     let options = Options {
         stress: false,
+        at: Positions::nominal(),
         channels: Some(Vec::new()),
         ..options.clone()
     };
@@ -260,9 +261,7 @@ fn blank_case(
     Ok(CaseTally {
         set: fired.set.clone(),
         claims,
-        readings: crate::fire::listed(&fired.readings, &fired.claims)
-            .map(reading)
-            .collect(),
+        readings: fired.answers().map(reading).collect(),
         hazards: fired.hazards.clone(),
     })
 }
