@@ -634,3 +634,20 @@ fn without_a_spread_there_is_neither_draw_nor_corner() {
         assert!(messages(&output).contains("no value of the netlist has a spread"));
     }
 }
+
+#[test]
+fn a_rating_is_judged_like_a_claim() {
+    let folder = folder();
+    let path = stage(&folder, "");
+    let text = fs::read_to_string(&path).unwrap();
+    let rated = text.replace("charged to 5 kV", "charged to 5 kV, rated 6 kV, 90 A");
+    fs::write(&path, rated).unwrap();
+    let output = run("judge", &path, &["--json"]);
+    assert_eq!(output.status.code(), Some(1), "{}", messages(&output));
+    let claims = record(&output)["claims"].clone();
+    let verdict = |k: usize| [claims[k]["name"].clone(), claims[k]["verdict"].clone()];
+    assert_eq!(verdict(0), ["bank.voltage", "holds"]);
+    assert_eq!(verdict(1), ["bank.current", "fails"]);
+    let neat = out(&run("neaten", &path, &[]));
+    assert!(neat.contains("charged to 5 kV, rated 6 kV, 90 A"), "{neat}");
+}

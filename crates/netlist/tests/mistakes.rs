@@ -76,6 +76,7 @@ const STATEMENTS: &[&str] = &[
     "let x = sqrt(1, 2)\nlet y = max(1)\nlet z = sin 5\nlet w = points(t)\n",
     "let x = (5 + 3))\nlet y = 5]\n",
     "resistor r from a to b = 1 ohm, charged to 5 V\nclaim y: x is at most 5 V, answer \"x\"\n",
+    "resistor r from a to b = 1 ohm, rated 5 W, 3 s\nresistor q from a to b = 1 ohm, ratd 5 W\ncoupling k between a and b = 0.5, rated 5 W\n",
     "span 1 ms\nspan 2 ms\ntitle \"a\"\ntitle \"b\"\nlimit steps 5\nlimit steps 6\n",
     "reading a = energy int r\nreading b = enrgy into r\nreading c = higest voltage at a\nreading d = energy into\n",
     "reading a = highest energy into r\nreading b = time of highst voltage at a\nreading c = voltage acros r\n",

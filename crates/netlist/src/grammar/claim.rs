@@ -119,7 +119,7 @@ impl Parser<'_> {
     }
 
     /// The dimension of an expression of let-values, where it can be told.
-    fn dimension(&self, expr: &Expr, depth: usize) -> Option<Dimension> {
+    pub(super) fn dimension(&self, expr: &Expr, depth: usize) -> Option<Dimension> {
         if depth > 500 {
             return None;
         }
