@@ -187,6 +187,24 @@ fn only_each_slice_of_one_study_once_makes_a_whole() {
     ));
 }
 
+/// A record may have been written by anyone: whatever it holds, it is no panic.
+#[test]
+fn an_absurd_tally_is_no_panic() {
+    let mut absurd = tally(SUPPLY, draws(3));
+    absurd.slice = [1, u64::MAX];
+    assert!(merge(vec![absurd.clone()]).is_err());
+    absurd.slice = [1, 1];
+    for claim in &mut absurd.cases[0].claims {
+        (claim.holds, claim.undecided) = (u64::MAX, u64::MAX);
+    }
+    let reading = &mut absurd.cases[0].readings[0];
+    std::mem::swap(&mut reading.least, &mut reading.most);
+    reading.of = u64::MAX;
+    let other = absurd.clone();
+    absurd.join(&other);
+    assert_eq!(Spread::from(absurd).cases.len(), 1);
+}
+
 #[test]
 fn a_draw_out_of_range_says_which() {
     let text = "

@@ -63,7 +63,7 @@ pub fn merge(mut slices: Vec<Tally>) -> Result<Tally, MergeError> {
         let slice = pair.first().copied().unwrap_or(0);
         return Err(MergeError::Twice { slice, of });
     }
-    let whole = given.iter().copied().chain([of + 1]);
+    let whole = given.iter().copied().chain([of.saturating_add(1)]);
     if let Some((slice, _)) = (1..=of).zip(whole).find(|(k, given)| k != given) {
         return Err(MergeError::Missing { slice, of });
     }

@@ -136,7 +136,7 @@ fn share(counts: &ClaimTally) -> ClaimShare {
     let of = counts.of();
     let (low, high) = (
         interval(counts.holds, of).0,
-        interval(counts.holds + counts.undecided, of).1,
+        interval(counts.holds.saturating_add(counts.undecided), of).1,
     );
     let verdict = match counts.asked {
         _ if of == 0 => Verdict::DoesNotApply,
@@ -167,7 +167,7 @@ fn reading(tally: &ReadingTally, varying: &[String]) -> ReadingSpread {
     let quantile = |q: &f64| {
         let (least, most) = ends?;
         let value = nominal + tally.bins.quantile(*q)?;
-        Some((*q, value.clamp(least.value, most.value)))
+        Some((*q, value.max(least.value).min(most.value)))
     };
     let all = about(sum, squares);
     let matter = |[p, pp, py]: &[super::sum::Sum; 3]| {

@@ -137,9 +137,9 @@ impl Tally {
 impl CaseTally {
     fn join(&mut self, other: &CaseTally) {
         for (mine, other) in self.claims.iter_mut().zip(&other.claims) {
-            mine.holds += other.holds;
-            mine.fails += other.fails;
-            mine.undecided += other.undecided;
+            mine.holds = mine.holds.saturating_add(other.holds);
+            mine.fails = mine.fails.saturating_add(other.fails);
+            mine.undecided = mine.undecided.saturating_add(other.undecided);
         }
         for (mine, other) in self.readings.iter_mut().zip(&other.readings) {
             mine.join(other);
@@ -161,7 +161,8 @@ impl ClaimTally {
     /// Shots in which it applies.
     #[must_use]
     pub fn of(&self) -> u64 {
-        self.holds + self.fails + self.undecided
+        let settled = self.holds.saturating_add(self.fails);
+        settled.saturating_add(self.undecided)
     }
 }
 
@@ -194,8 +195,8 @@ impl ReadingTally {
     }
 
     fn join(&mut self, other: &ReadingTally) {
-        self.of += other.of;
-        self.missing += other.missing;
+        self.of = self.of.saturating_add(other.of);
+        self.missing = self.missing.saturating_add(other.missing);
         self.bound = self.bound.zip(other.bound).map(|(a, b)| a.max(b));
         lower(&mut self.least, other.least, 1.0);
         lower(&mut self.most, other.most, -1.0);
