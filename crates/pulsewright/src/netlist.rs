@@ -187,6 +187,21 @@ impl Netlist {
     /// # Errors
     ///
     /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// ```
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "let load = 50 ohm
+    ///      voltage feed from top to ground = 10 V
+    ///      resistor chest from top to ground = load
+    ///      span 1 ms
+    ///      cases load = 25 ohm, 50 ohm, open circuit
+    ///      reading dose = energy into chest",
+    /// )?;
+    /// assert_eq!(netlist.fire_cases(&netlist.options())?.len(), 3);
+    /// # Ok::<(), pulsewright::Error>(())
+    /// ```
     pub fn fire_cases(&self, options: &Options<'_>) -> Result<Vec<Fired>, Error> {
         pulsewright_study::fire_cases(self.circuit(), options).map_err(|e| self.error(e))
     }
@@ -232,6 +247,21 @@ impl Netlist {
     /// # Errors
     ///
     /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// ```
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "voltage feed from top to ground = 10 V, tolerance 10 %
+    ///      resistor load from top to ground = 5 ohm
+    ///      span 1 ms
+    ///      claim low: highest voltage across load is at most 10.5 V",
+    /// )?;
+    /// let worst = netlist.corner(&netlist.options(), "low")?.expect("the feed varies");
+    /// assert_eq!(worst.corner[0].name, "feed");
+    /// assert!((worst.corner[0].value - 11.0).abs() < 1e-9);
+    /// # Ok::<(), pulsewright::Error>(())
+    /// ```
     pub fn corner(&self, options: &Options<'_>, claim: &str) -> Result<Option<Worst>, Error> {
         pulsewright_study::corner(self.circuit(), options, claim).map_err(|e| self.error(e))
     }
