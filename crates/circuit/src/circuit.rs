@@ -19,6 +19,7 @@ use crate::lets;
 use crate::numbers::{Blocked, Numbers, Setter};
 use crate::setup::{NodeIndex, PartIndex, Setup};
 use crate::span::Span;
+use crate::vary::{self, Moves, Positions, Stand, Varying};
 
 /// What a let-value stands for in one case.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -108,9 +109,68 @@ impl Circuit {
     ///
     /// Every value that is out of its range in this case.
     pub fn setup(&self, set: &Lets) -> Result<Setup, Vec<Fault>> {
+        self.setup_at(set, &Positions::nominal())
+    }
+
+    /// The same with values at positions within their spreads; the let-values are those of
+    /// [`Circuit::lets_at`].
+    ///
+    /// # Errors
+    ///
+    /// Every value that is out of its range there.
+    pub fn setup_at(&self, set: &Lets, at: &Positions) -> Result<Setup, Vec<Fault>> {
         let lookup = |name: &str| set.get(name).copied();
         let case = self.case_words(set);
-        Setter::new(&self.draft, &self.index, &self.types, &lookup, case).setup()
+        let mut setter = Setter::new(&self.draft, &self.index, &self.types, &lookup, case);
+        setter.moves = Moves::new(&self.draft, at);
+        setter.setup()
+    }
+
+    /// The values that vary in a study, in the order of the text: let-values, then parts.
+    #[must_use]
+    pub fn varying(&self) -> Vec<Varying> {
+        let sites = vary::sites(&self.draft).into_iter();
+        sites
+            .filter_map(|site| {
+                let law = vary::law(&site.value.spread.as_ref()?.kind);
+                Some(Varying {
+                    name: site.name,
+                    law,
+                })
+            })
+            .collect()
+    }
+
+    /// What the values that vary come to at positions within their spreads, in the order of
+    /// [`Circuit::varying`]; the let-values are those of [`Circuit::lets_at`].
+    #[must_use]
+    pub fn stands(&self, set: &Lets, at: &Positions) -> Vec<Stand> {
+        let lookup = |name: &str| set.get(name).copied();
+        let mut setter = Setter::new(&self.draft, &self.index, &self.types, &lookup, Vec::new());
+        setter.moves = Moves::new(&self.draft, at);
+        let stand = |site: vary::Site<'_>| {
+            let nominal = &site.value.nominal;
+            let dimension = site.dimension.unwrap_or_else(|| self.dimension(nominal));
+            let shift = setter.shift_of(site.value);
+            let (value, dimension) = match (site.is_let, setter.numbers.number(nominal)) {
+                (true, _) => match set.get(&site.name) {
+                    Some(LetValue::Number { value, dimension }) => (*value, *dimension),
+                    _ => return None,
+                },
+                (false, Ok(x)) => (shift.map_or(x, |s| s.of(x)), dimension),
+                (false, Err(Blocked::Circuit(_))) => return None,
+                (false, Err(_)) => (shift.map_or(1.0, |s| s.scale), Dimension::NONE),
+            };
+            Some(Stand {
+                name: site.name,
+                value,
+                dimension,
+            })
+        };
+        vary::sites(&self.draft)
+            .into_iter()
+            .filter_map(stand)
+            .collect()
     }
 
     /// The let-values of a case that differ from those written, in words.
@@ -132,6 +192,20 @@ impl Circuit {
     ///
     /// An override that fits no let-value, a value that is no finite number.
     pub fn lets(&self, overrides: &[(String, LetValue)]) -> Result<Lets, Vec<Fault>> {
+        self.lets_at(overrides, &Positions::nominal())
+    }
+
+    /// The same with let-values at positions within their spreads: what a case gives one is
+    /// moved by its spread too.
+    ///
+    /// # Errors
+    ///
+    /// As for [`Circuit::lets`].
+    pub fn lets_at(
+        &self,
+        overrides: &[(String, LetValue)],
+        at: &Positions,
+    ) -> Result<Lets, Vec<Fault>> {
         let misfits: Vec<Fault> = overrides
             .iter()
             .filter_map(|(name, value)| self.check_override(name, value).err())
@@ -144,8 +218,9 @@ impl Circuit {
             case,
             spread: false,
         };
-        let (values, faults) =
-            lets::evaluate(&self.draft, &self.index, &self.types, overrides, &given);
+        let (draft, index, types) = (&self.draft, &self.index, &self.types);
+        let moves = Moves::new(draft, at);
+        let (values, faults) = lets::evaluate(draft, index, types, overrides, &moves, &given);
         if !faults.is_empty() {
             return Err(faults);
         }

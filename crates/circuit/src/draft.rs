@@ -61,6 +61,8 @@ pub struct Claim {
     pub when: Vec<Applies>,
     /// What is added to each limit.
     pub allowing: Option<Expr>,
+    /// `in at least 99.7 % of shots`: the share of a study's shots that it is to hold in.
+    pub in_shots: Option<Expr>,
     /// Where it stands.
     pub span: Span,
 }

@@ -8,8 +8,10 @@ use crate::draft::{CaseValues, Cases, Draft};
 use crate::expr::{Expr, ExprKind};
 use crate::fault::{Fault, FaultKind, Given};
 use crate::index::Index;
-use crate::numbers::Numbers;
+use crate::numbers::{Numbers, Setter};
 use crate::span::Span;
+use crate::spread::Value;
+use crate::vary::Moves;
 
 /// Let-values by name, in place of what is written.
 pub(crate) type Set = Vec<(String, LetValue)>;
@@ -20,6 +22,7 @@ pub(crate) fn evaluate(
     index: &Index,
     types: &Types,
     overrides: &[(String, LetValue)],
+    moves: &Moves,
     given: &Given,
 ) -> (Nominal, Vec<Fault>) {
     let mut values: Nominal = vec![None; draft.lets.len()];
@@ -41,6 +44,14 @@ pub(crate) fn evaluate(
                 })
             }),
         };
+        let value = match (value, moves.of(&l.value)) {
+            (Some(LetValue::Number { value, dimension }), Some(p)) => {
+                let numbers = &lookup(index, &values);
+                let value = moved(draft, index, types, numbers, (&l.value, p), value);
+                Some(LetValue::Number { value, dimension })
+            }
+            (value, _) => value,
+        };
         let value = match value {
             Some(LetValue::Number { value, .. }) if !value.is_finite() => {
                 let kind = FaultKind::NotFinite {
@@ -57,6 +68,22 @@ pub(crate) fn evaluate(
         }
     }
     (values, faults)
+}
+
+/// A let-value's number at a position within its spread.
+fn moved(
+    draft: &Draft,
+    index: &Index,
+    types: &Types,
+    lookup: &dyn Fn(&str) -> Option<LetValue>,
+    (value, p): (&Value, f64),
+    x: f64,
+) -> f64 {
+    let setter = Setter::new(draft, index, types, lookup, Vec::new());
+    value
+        .spread
+        .as_ref()
+        .map_or(x, |s| setter.shift(&s.kind, p).of(x))
 }
 
 /// A circuit word, or the number of an expression of the let-values known so far.

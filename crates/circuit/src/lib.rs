@@ -31,6 +31,7 @@ pub mod setup;
 mod slots;
 pub mod span;
 pub mod spread;
+pub mod vary;
 mod walk;
 pub mod words;
 
@@ -43,3 +44,4 @@ pub use formula::{Formula, Probe};
 pub use phrase::Phrase;
 pub use setup::Setup;
 pub use span::{Name, Span};
+pub use vary::{Positions, Stand, Varying};

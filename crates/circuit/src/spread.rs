@@ -43,3 +43,15 @@ pub enum SpreadKind {
     /// `standard deviation 25 % lognormal`: of the logarithm.
     Lognormal(Expr),
 }
+
+impl SpreadKind {
+    /// Its expressions: the amount, or the lower and the upper limit.
+    pub(crate) fn amounts(&self) -> Vec<&Expr> {
+        match self {
+            SpreadKind::Tolerance(e) | SpreadKind::Deviation(e) | SpreadKind::Lognormal(e) => {
+                vec![e]
+            }
+            SpreadKind::Limits(low, high) => vec![low, high],
+        }
+    }
+}

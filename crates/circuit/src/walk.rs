@@ -6,7 +6,7 @@ use crate::parts::{Control, PartKind, Switch};
 use crate::phrase::{Level, Measure, Phrase, Window};
 use crate::schedule::{Action, TriggerKind};
 use crate::slots;
-use crate::spread::{SpreadKind, Value};
+use crate::spread::Value;
 
 /// Calls `visit` on each expression that stands directly within this one.
 pub(crate) fn children<'a>(e: &'a Expr, visit: &mut dyn FnMut(&'a Expr)) {
@@ -151,6 +151,7 @@ pub(crate) fn all<'a>(draft: &'a Draft, visit: &mut dyn FnMut(&'a Expr)) {
     for claim in &draft.claims {
         visit(&claim.reading);
         claim.allowing.iter().for_each(&mut *visit);
+        claim.in_shots.iter().for_each(&mut *visit);
         relation(&claim.relation, visit);
         for condition in &claim.when {
             if let Applies::Compare { left, right, .. } = condition {
@@ -202,16 +203,11 @@ fn relation<'a>(relation: &'a Relation, visit: &mut dyn FnMut(&'a Expr)) {
 
 fn value<'a>(value: &'a Value, visit: &mut dyn FnMut(&'a Expr)) {
     visit(&value.nominal);
-    match value.spread.as_ref().map(|s| &s.kind) {
-        Some(SpreadKind::Tolerance(e) | SpreadKind::Deviation(e) | SpreadKind::Lognormal(e)) => {
-            visit(e)
-        }
-        Some(SpreadKind::Limits(a, b)) => {
-            visit(a);
-            visit(b);
-        }
-        None => {}
-    }
+    let spread = value.spread.as_ref();
+    spread
+        .into_iter()
+        .flat_map(|s| s.kind.amounts())
+        .for_each(visit);
 }
 
 fn schedule<'a>(actions: &'a [Action], visit: &mut dyn FnMut(&'a Expr)) {

@@ -3,7 +3,7 @@
 //! The words are the manual's: a verb, its files, and options that mean the same for every
 //! verb that has them.
 
-use clap::{Args, Parser, Subcommand, ValueEnum};
+use clap::{ArgAction, Args, Parser, Subcommand, ValueEnum};
 use std::path::PathBuf;
 
 /// The command.
@@ -18,6 +18,7 @@ use std::path::PathBuf;
     disable_help_subcommand = true,
     subcommand_value_name = "VERB",
     subcommand_help_heading = "Verbs",
+    disable_version_flag = true,
     arg_required_else_help = true,
     max_term_width = 100
 )]
@@ -45,6 +46,9 @@ pub struct Common {
     /// Colour what is printed
     #[arg(long, value_enum, value_name = "WHEN", default_value_t = Colour::Auto, global = true)]
     pub color: Colour,
+    /// Print version
+    #[arg(short = 'V', long, action = ArgAction::Version, hide_short_help = true)]
+    pub version: Option<bool>,
 }
 
 /// When to colour.
@@ -74,6 +78,31 @@ pub struct Case {
     pub case: Option<u32>,
 }
 
+/// One shot of many in place of the nominal one.
+#[derive(Args, Clone, Debug, Default)]
+pub struct Which {
+    /// The case.
+    #[command(flatten)]
+    pub case: Case,
+    /// Take the Kth draw of `spread`, from 1, in place of nominal values
+    #[arg(long, value_name = "K", value_parser = clap::value_parser!(u64).range(1..), conflicts_with = "corner")]
+    pub draw: Option<u64>,
+    /// What it comes from.
+    #[command(flatten)]
+    pub seed: Seed,
+    /// Take the worst corner of a claim over the tolerances
+    #[arg(long, value_name = "CLAIM")]
+    pub corner: Option<String>,
+}
+
+/// What draws come from.
+#[derive(Args, Clone, Copy, Debug, Default)]
+pub struct Seed {
+    /// The seed of the draws
+    #[arg(long, value_name = "S", default_value_t = 1)]
+    pub seed: u64,
+}
+
 /// The verbs.
 #[derive(Debug, Subcommand)]
 pub enum Verb {
@@ -89,7 +118,7 @@ pub enum Verb {
         #[arg(long)]
         json: bool,
     },
-    /// List the circuit as it was understood: parts, nodes, schedules, defaults taken
+    /// List the circuit as understood: parts, nodes, schedules, defaults
     #[command(after_help = "example:\n  pulsewright list stage.shot --set load=75ohm")]
     List {
         /// A netlist; `-` is standard input
@@ -100,7 +129,7 @@ pub enum Verb {
         #[command(flatten)]
         case: Case,
     },
-    /// Fire one shot: readings with bounds, claims, events, balance, stress, hazards
+    /// Fire one shot: readings, claims, events, balance, stress, hazards
     #[command(after_help = "example:\n  pulsewright fire stage.shot --case 3 --json -o shot.json")]
     Fire {
         /// A netlist; `-` is standard input
@@ -109,7 +138,7 @@ pub enum Verb {
         #[command(flatten)]
         settings: Settings,
         #[command(flatten)]
-        case: Case,
+        which: Which,
         /// Print a record in place of tables
         #[arg(long)]
         json: bool,
@@ -129,7 +158,52 @@ pub enum Verb {
         #[arg(long)]
         json: bool,
     },
-    /// Find the natural frequencies in each topology that a shot passes through
+    /// Draw over the tolerances: how often each claim holds, and what matters
+    #[command(after_help = "examples:
+  pulsewright spread stage.shot --shots 10000
+  pulsewright spread stage.shot --shots 10000 --slice 3/7 -o part3.json
+  pulsewright merge part*.json")]
+    Spread {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+        /// How many draws each case is fired with
+        #[arg(long, value_name = "N", value_parser = clap::value_parser!(u64).range(1..))]
+        shots: u64,
+        #[command(flatten)]
+        seed: Seed,
+        /// Fire the Ith of N parts of the draws, and print a record for `merge`
+        #[arg(long, value_name = "I/N")]
+        slice: Option<String>,
+        /// On how many threads; changes nothing but the time
+        #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..))]
+        threads: Option<u32>,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+    },
+    /// Join the records of the slices of a study to that of the whole
+    #[command(after_help = "example:\n  pulsewright merge part1.json part2.json part3.json --json")]
+    Merge {
+        /// Records that `spread --slice` wrote, each slice once, in any order
+        #[arg(required = true, value_name = "FILE")]
+        files: Vec<PathBuf>,
+        /// Print a record in place of tables
+        #[arg(long)]
+        json: bool,
+    },
+    /// Print every case as CSV: its let-values and its readings
+    #[command(after_help = "example:\n  pulsewright table stage.shot -o doses.csv")]
+    Table {
+        /// A netlist; `-` is standard input
+        #[arg(value_name = "FILE")]
+        file: PathBuf,
+        #[command(flatten)]
+        settings: Settings,
+    },
+    /// Find the natural frequencies in each topology of a shot
     #[command(
         long_about = MODES,
         after_help = "example:\n  pulsewright modes stage.shot --set load=150ohm"
@@ -141,12 +215,12 @@ pub enum Verb {
         #[command(flatten)]
         settings: Settings,
         #[command(flatten)]
-        case: Case,
+        which: Which,
         /// Print a record in place of tables
         #[arg(long)]
         json: bool,
     },
-    /// Compare the integrators: error of each reading against the size of the step
+    /// Compare the integrators: error of each reading against the step
     #[command(
         long_about = METHODS,
         after_help = "example:\n  pulsewright methods stage.shot --svg work.svg"
@@ -173,7 +247,10 @@ pub enum Verb {
         halvings: Option<u32>,
     },
     /// Print the channels as CSV, at the run's own steps or evenly
-    #[command(after_help = "example:\n  pulsewright waveform stage.shot --every 10us -o pulse.csv")]
+    #[command(
+        after_help = "example:\n  pulsewright spread stage.shot --shots 10000 --seed 1
+  pulsewright waveform stage.shot --every 10us -o pulse.csv"
+    )]
     Waveform {
         /// A netlist; `-` is standard input
         #[arg(value_name = "FILE")]
@@ -181,7 +258,7 @@ pub enum Verb {
         #[command(flatten)]
         settings: Settings,
         #[command(flatten)]
-        case: Case,
+        which: Which,
         /// A row every so often (`1us`), in place of the run's own steps
         #[arg(long, value_name = "TIME")]
         every: Option<String>,
@@ -199,7 +276,7 @@ pub enum Verb {
         #[command(flatten)]
         settings: Settings,
         #[command(flatten)]
-        case: Case,
+        which: Which,
         /// Show only the time from T1 to T2 (`--between 0s 20us`)
         #[arg(long, num_args = 2, value_names = ["T1", "T2"])]
         between: Option<Vec<String>>,
@@ -233,7 +310,7 @@ pub enum Verb {
         #[arg(long)]
         check: bool,
     },
-    /// Show the manual's page for a verb, a word of the language, or a message's code
+    /// Show the page for a verb, a word of the language, or a code
     #[command(after_help = "example:\n  pulsewright manual P0107")]
     Manual {
         /// A verb, a word, or a code; without one, the list of pages
@@ -341,7 +418,7 @@ const EXIT_CODES_AND_CAUTIONS: &str = "examples:
   pulsewright manual claim
 
 exit codes:
-  0    done; under judge and fire --strict every claim holds
+  0    done; under judge, spread, merge and fire --strict every claim holds
   1    some claim fails (neaten --check: some file is not in the canonical layout;
        report --verify: the page is not what the netlist gives)
   2    the input is at fault: usage, netlist, a circuit without an answer, judge without claims

@@ -404,7 +404,8 @@ fn check_takes_several_files_and_ends_with_the_worst() {
 #[test]
 fn help_fits_a_screen_and_says_it_all_at_length() {
     let short = out(&pulsewright().arg("-h").output().unwrap());
-    assert!(short.lines().count() <= 24, "{short}");
+    assert!(short.lines().count() <= 28, "{short}");
+    assert!(short.lines().all(|l| l.chars().count() <= 90), "{short}");
     assert!(short.contains("pulsewright judge stage.shot"));
     let long = out(&pulsewright().arg("--help").output().unwrap());
     for words in [
@@ -602,4 +603,222 @@ fn manual_pages_are_written_for_every_verb() {
         .output()
         .unwrap();
     assert_eq!(gone.status.code(), Some(3));
+}
+
+/// A divider whose yield is three quarters, in two cases of which the second draws the same.
+const DIVIDER: &str = r#"title "A supply"
+let load = 5 ohm
+voltage  feed from top to ground = 10 V, tolerance 10 %
+resistor path from top to ground = load, standard deviation 2 %
+span 1 ms
+cases load = 5 ohm, 10 ohm
+"#;
+
+fn divider(folder: &tempfile::TempDir, claim: &str) -> PathBuf {
+    let path = folder.path().join("divider.shot");
+    fs::write(&path, format!("{DIVIDER}{claim}\n")).unwrap();
+    path
+}
+
+const MOSTLY: &str =
+    "claim low: highest voltage across path is at most 10.5 V, in at least 50 % of shots";
+
+#[test]
+fn spread_ends_with_what_the_shares_say() {
+    for (claim, code) in [
+        (MOSTLY, 0),
+        (
+            "claim low: highest voltage across path is at most 10.5 V",
+            1,
+        ),
+        (
+            "claim low: highest voltage across path is at most 10.5 V, in at least 75 % of shots",
+            4,
+        ),
+        ("", 0),
+    ] {
+        let folder = folder();
+        let output = run("spread", &divider(&folder, claim), &["--shots", "60"]);
+        assert_eq!(
+            output.status.code(),
+            Some(code),
+            "{}{}",
+            out(&output),
+            messages(&output)
+        );
+        assert!(out(&output).lines().all(|l| l.chars().count() <= 80));
+    }
+}
+
+#[test]
+fn slices_merge_to_the_bytes_of_the_whole_on_any_threads() {
+    let folder = folder();
+    let path = divider(&folder, MOSTLY);
+    let spread = |more: &[&str]| {
+        let output = run(
+            "spread",
+            &path,
+            &[&["--shots", "40", "--seed", "9"], more].concat(),
+        );
+        assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+        output.stdout
+    };
+    let whole = spread(&["--json"]);
+    let mut merged = pulsewright();
+    merged.arg("merge").arg("--json");
+    for k in 1..=7 {
+        let (slice, threads) = (format!("{k}/7"), (1 + k % 2).to_string());
+        let part = folder.path().join(format!("part{k}.json"));
+        fs::write(&part, spread(&["--slice", &slice, "--threads", &threads])).unwrap();
+        merged.arg(part);
+    }
+    assert_eq!(merged.output().unwrap().stdout, whole);
+    assert_eq!(spread(&["--json", "--threads", "1"]), whole);
+}
+
+#[test]
+fn merge_says_which_slice_is_missing() {
+    let folder = folder();
+    let part = folder.path().join("part.json");
+    let path = divider(&folder, "");
+    let target = part.to_str().unwrap();
+    run(
+        "spread",
+        &path,
+        &["--shots", "4", "--slice", "1/2", "-o", target],
+    );
+    let output = run("merge", &part, &[]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        messages(&output).contains("slice 2 of 2 is missing"),
+        "{}",
+        messages(&output)
+    );
+    let output = run("merge", &path, &[]);
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        messages(&output).contains("it is no record"),
+        "{}",
+        messages(&output)
+    );
+}
+
+#[test]
+fn a_slice_is_one_of_its_number() {
+    let folder = folder();
+    for slice in ["0/7", "8/7", "3", "a/b"] {
+        let output = run(
+            "spread",
+            &divider(&folder, ""),
+            &["--shots", "5", "--slice", slice],
+        );
+        assert_eq!(output.status.code(), Some(2));
+        assert!(messages(&output).contains("which of how many slices"));
+    }
+}
+
+#[test]
+fn a_draw_of_a_study_is_fired_again() {
+    let folder = folder();
+    let path = divider(
+        &folder,
+        "claim low: highest voltage across path is at most 10.5 V",
+    );
+    let study = record(&run(
+        "spread",
+        &path,
+        &["--shots", "30", "--seed", "5", "--json"],
+    ));
+    let most = &study["cases"][1]["readings"][0]["most"];
+    let draw = most["draw"].to_string();
+    let again = ["--case", "2", "--draw", &draw, "--seed", "5", "--json"];
+    let fired = record(&run("fire", &path, &again));
+    let (a, b) = (
+        most["value"].as_f64().unwrap(),
+        fired["claims"][0]["value"].as_f64().unwrap(),
+    );
+    assert!((a - b).abs() < 1e-9 * a, "{a} {b}");
+    assert!(fired["values"]["feed"].as_f64().unwrap() > 10.5);
+    let page = out(&run("fire", &path, &["--draw", &draw, "--seed", "5"]));
+    assert!(page.contains("at feed = "), "{page}");
+}
+
+#[test]
+fn the_worst_corner_of_a_claim_is_fired_again() {
+    let folder = folder();
+    let path = divider(
+        &folder,
+        "claim low: highest voltage across path is at most 10.5 V",
+    );
+    let judged = run("judge", &path, &["--json"]);
+    assert_eq!(judged.status.code(), Some(1));
+    let claim = &record(&judged)["claims"][0];
+    assert_eq!(
+        (claim["verdict"].as_str(), claim["nominal"].as_str()),
+        (Some("fails"), Some("holds"))
+    );
+    assert!((claim["worst"]["corner"]["feed"].as_f64().unwrap() - 11.0).abs() < 1e-9);
+    let fired = run("fire", &path, &["--corner", "low", "--strict", "--json"]);
+    assert_eq!(fired.status.code(), Some(1), "{}", messages(&fired));
+    assert_eq!(
+        record(&fired)["claims"][0]["value"],
+        claim["worst"]["value"]
+    );
+    let rows = out(&run("waveform", &path, &["--corner", "low"]));
+    assert!(rows.contains(",11.0") || rows.contains(",11"), "{rows}");
+    let unknown = run("fire", &path, &["--corner", "lwo"]);
+    assert_eq!(unknown.status.code(), Some(2));
+    assert!(
+        messages(&unknown).contains("the claims are low"),
+        "{}",
+        messages(&unknown)
+    );
+}
+
+#[test]
+fn a_table_has_a_row_a_case() {
+    let folder = folder();
+    let text = "cases load = 50 ohm, open circuit\nreading dose = energy into chest";
+    let output = run("table", &stage(&folder, text), &[]);
+    assert_eq!(output.status.code(), Some(0), "{}", messages(&output));
+    let text = out(&output);
+    let rows: Vec<Vec<&str>> = text.lines().map(|l| l.split(',').collect()).collect();
+    assert_eq!(rows[0], ["load (ohm)", "crest (A)", "dose (J)"]);
+    let number = |cell: &str| cell.parse::<f64>().unwrap();
+    assert_eq!(number(rows[1][0]), 50.0);
+    assert!((number(rows[1][1]) - 100.0).abs() < 1e-3);
+    assert!((number(rows[1][2]) - 400.0).abs() < 1e-3);
+    assert_eq!(
+        (rows[2][0], number(rows[2][2]), rows.len()),
+        ("open circuit", 0.0, 3)
+    );
+    let nothing = run("table", &PathBuf::from("-"), &[]);
+    assert_eq!(nothing.status.code(), Some(2));
+}
+
+#[test]
+fn without_a_spread_there_is_neither_draw_nor_corner() {
+    let folder = folder();
+    for more in [["--draw", "3"], ["--corner", "dose"]] {
+        let output = run("fire", &stage(&folder, HOLDS), &more);
+        assert_eq!(output.status.code(), Some(2));
+        assert!(messages(&output).contains("no value of the netlist has a spread"));
+    }
+}
+
+#[test]
+fn a_rating_is_judged_like_a_claim() {
+    let folder = folder();
+    let path = stage(&folder, "");
+    let text = fs::read_to_string(&path).unwrap();
+    let rated = text.replace("charged to 5 kV", "charged to 5 kV, rated 6 kV, 90 A");
+    fs::write(&path, rated).unwrap();
+    let output = run("judge", &path, &["--json"]);
+    assert_eq!(output.status.code(), Some(1), "{}", messages(&output));
+    let claims = record(&output)["claims"].clone();
+    let verdict = |k: usize| [claims[k]["name"].clone(), claims[k]["verdict"].clone()];
+    assert_eq!(verdict(0), ["bank.voltage", "holds"]);
+    assert_eq!(verdict(1), ["bank.current", "fails"]);
+    let neat = out(&run("neaten", &path, &[]));
+    assert!(neat.contains("charged to 5 kV, rated 6 kV, 90 A"), "{neat}");
 }

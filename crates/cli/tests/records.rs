@@ -58,6 +58,18 @@ fn records_fit_their_schemas() {
 }
 
 #[test]
+fn records_of_studies_fit_their_schema() {
+    let path = examples()
+        .into_iter()
+        .find(|p| p.ends_with("damped-sine.shot"))
+        .unwrap();
+    let whole = run("spread", &path, &["--shots", "2", "--json"]);
+    schema::check("pulsewright.spread-1.json", &text(whole));
+    let slice = run("spread", &path, &["--shots", "2", "--slice", "1/2"]);
+    schema::check("pulsewright.slice-1.json", &text(slice));
+}
+
+#[test]
 fn pages_fit_80_columns() {
     for path in examples() {
         for verb in ["list", "fire", "judge", "modes", "methods"] {

@@ -179,6 +179,11 @@ pub const CODES: &[(&str, &str, &str)] = &[
         "`title` and the statements of the run (`span`, `start`, `integrate`, `error`, `time step`, `channels`, `limit` of one kind) stand once in a file.",
     ),
     (
+        "P0313",
+        "a rating of another kind",
+        "A part is `rated` by what it stands, and which it is its unit says: `rated 6 kV, 200 A, 5 W, 20 J, 3 A²*s`. What is none of these is stated as a claim.",
+    ),
+    (
         "P0501",
         "an unknown limit",
         "`limit` raises `steps`, `events`, `unknowns`, `parts` or `nesting`:\n\n    limit steps 20_000_000",

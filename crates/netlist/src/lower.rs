@@ -387,7 +387,10 @@ impl<'a> Pass<'a, '_> {
             Made::Title(text) => draft.title = draft.title.take().or(Some(text)),
             Made::Note(text) => draft.notes.push(text),
             Made::Let(made) => draft.lets.push(made),
-            Made::Part(part) => draft.parts.push(part),
+            Made::Part(part, claims) => {
+                draft.parts.push(part);
+                draft.claims.extend(claims);
+            }
             Made::Signal(named) => draft.signals.push(named),
             Made::Reading(named) => draft.readings.push(named),
             Made::Claim(claim) => draft.claims.push(claim),

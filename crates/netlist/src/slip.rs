@@ -143,6 +143,10 @@ pub(crate) enum What {
         takes: &'static str,
         given: usize,
     },
+    #[error(
+        "`{part}` is rated by a voltage, a current, a power, an energy or an action, and {found} is none of these"
+    )]
+    NotRated { part: String, found: String },
     #[error("`{word}` may stand once in a file, and stands here again")]
     StatementTwice { word: String },
 
@@ -236,6 +240,7 @@ impl What {
             What::NoQualifier { .. } => "P0310",
             What::Arguments { .. } => "P0311",
             What::StatementTwice { .. } => "P0312",
+            What::NotRated { .. } => "P0313",
             What::UnknownLimit { .. } => "P0501",
             What::Count { .. } => "P0502",
             What::SameAllowance { .. } => "P0503",

@@ -100,7 +100,6 @@ pub(crate) const LATER_QUALIFIERS: &[&str] = &[
     "saturates",
     "breakdown",
     "transit",
-    "rated",
     "fires",
     "holding",
     "recovery",

@@ -574,3 +574,47 @@ fn results_can_be_sent_and_shared() {
     is::<pulsewright_netlist::Mistakes>();
     is::<pulsewright_netlist::Parsed>();
 }
+
+#[test]
+fn each_rating_is_a_claim_of_its_own() {
+    let made = draft(
+        "let most = 6 kV
+         capacitor C from a to b = 1 uF, tolerance 5 %, rated most, 200 A, 5 W, rated (2 * 10 J), 3 A²*s
+         switch fire from a to b : open, closes at 1 us, rated 40 A
+         repeat k from 1 to 2
+           resistor r[k] from a to b = 1 ohm, rated 2 W
+         end",
+    );
+    let claims: Vec<String> = made
+        .claims
+        .iter()
+        .map(|c| format!("{}: {} {}", c.name, c.reading, c.relation))
+        .collect();
+    assert_eq!(
+        claims,
+        [
+            "C.voltage: largest voltage across C is at most most",
+            "C.current: largest current through C is at most 200 A",
+            "C.power: mean power into C is at most 5 W",
+            "C.energy: energy into C is at most 2 * 10 J",
+            "C.action: action of C is at most 3 A²*s",
+            "fire.current: largest current through fire is at most 40 A",
+            "r[1].power: mean power into r[1] is at most 2 W",
+            "r[2].power: mean power into r[2] is at most 2 W",
+        ]
+    );
+}
+
+#[test]
+fn a_part_called_by_a_unit_may_be_rated() {
+    let text = "capacitor C from a to ground = 1 uF, rated 6 kV\nresistor V from a to ground = 5 ohm, rated 3 W\nspan 1 ms";
+    assert_eq!(
+        read(text.as_bytes(), "netlist")
+            .unwrap()
+            .circuit
+            .draft()
+            .claims
+            .len(),
+        2
+    );
+}

@@ -17,7 +17,8 @@ pub use pulsewright_circuit::{Circuit, Draft, LetValue};
 pub use pulsewright_netlist::Mistakes;
 pub use pulsewright_study::outcome::{Fired, Found, Judged, Verdict};
 pub use pulsewright_study::{
-    Methods, Modes, Options, Rungs, StudyError, fire, judge, methods, modes,
+    Methods, Modes, Options, Rungs, StudyError, corner, fire, fire_cases, judge, methods, modes,
+    spread,
 };
 
 /// Reads a netlist into a circuit.

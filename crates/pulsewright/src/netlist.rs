@@ -7,7 +7,8 @@ use pulsewright_circuit::{Circuit, LetValue, Lets};
 use pulsewright_netlist::{Mistakes, Source};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{Fired, Judged, Set, SetValue};
-use pulsewright_study::{Methods, Modes, Options, Rungs, StudyError};
+use pulsewright_study::spread::{Draws, Tally};
+use pulsewright_study::{Methods, Modes, Options, Rungs, StudyError, Worst};
 use sha2::{Digest, Sha256};
 
 /// Let-values given from outside, by name.
@@ -180,6 +181,31 @@ impl Netlist {
         pulsewright_study::fire(self.circuit(), options).map_err(|e| self.error(e))
     }
 
+    /// Fires every case at nominal values. What is held is said in `options`, as for
+    /// [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// ```
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "let load = 50 ohm
+    ///      voltage feed from top to ground = 10 V
+    ///      resistor chest from top to ground = load
+    ///      span 1 ms
+    ///      cases load = 25 ohm, 50 ohm, open circuit
+    ///      reading dose = energy into chest",
+    /// )?;
+    /// assert_eq!(netlist.fire_cases(&netlist.options())?.len(), 3);
+    /// # Ok::<(), pulsewright::Error>(())
+    /// ```
+    pub fn fire_cases(&self, options: &Options<'_>) -> Result<Vec<Fired>, Error> {
+        pulsewright_study::fire_cases(self.circuit(), options).map_err(|e| self.error(e))
+    }
+
     /// Judges every case. What is held is said in `options`, as for [`Netlist::fire`].
     ///
     /// # Errors
@@ -187,6 +213,57 @@ impl Netlist {
     /// [`Error`].
     pub fn judge(&self, options: &Options<'_>) -> Result<Judged, Error> {
         pulsewright_study::judge(self.circuit(), options).map_err(|e| self.error(e))
+    }
+
+    /// Fires the draws of a study over spreads. What is held is said in `options`, as for
+    /// [`Netlist::fire`].
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// ```
+    /// use pulsewright::study::spread::{Draws, Spread};
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "voltage feed from top to ground = 10 V, tolerance 10 %
+    ///      resistor load from top to ground = 5 ohm
+    ///      span 1 ms
+    ///      claim low: highest voltage across load is at most 10.5 V, in at least 50 % of shots",
+    /// )?;
+    /// let draws = Draws { shots: 100, seed: 1, slice: [1, 1], threads: None };
+    /// let spread = Spread::from(netlist.spread(&netlist.options(), draws)?);
+    /// assert_eq!(spread.claims[0].1, pulsewright::Verdict::Holds);
+    /// # Ok::<(), pulsewright::Error>(())
+    /// ```
+    pub fn spread(&self, options: &Options<'_>, draws: Draws) -> Result<Tally, Error> {
+        pulsewright_study::spread(self.circuit(), options, draws).map_err(|e| self.error(e))
+    }
+
+    /// The worst corner of a claim over the tolerances with the let-values that `options` hold;
+    /// none where it does not apply there, or nothing varies.
+    ///
+    /// # Errors
+    ///
+    /// [`Error`].
+    ///
+    /// # Example
+    ///
+    /// ```
+    /// let netlist = pulsewright::Netlist::read(
+    ///     "voltage feed from top to ground = 10 V, tolerance 10 %
+    ///      resistor load from top to ground = 5 ohm
+    ///      span 1 ms
+    ///      claim low: highest voltage across load is at most 10.5 V",
+    /// )?;
+    /// let worst = netlist.corner(&netlist.options(), "low")?.expect("the feed varies");
+    /// assert_eq!(worst.corner[0].name, "feed");
+    /// assert!((worst.corner[0].value - 11.0).abs() < 1e-9);
+    /// # Ok::<(), pulsewright::Error>(())
+    /// ```
+    pub fn corner(&self, options: &Options<'_>, claim: &str) -> Result<Option<Worst>, Error> {
+        pulsewright_study::corner(self.circuit(), options, claim).map_err(|e| self.error(e))
     }
 
     /// Finds the natural frequencies in every topology that one case passes through. What is held
@@ -244,6 +321,10 @@ impl Netlist {
         match error {
             StudyError::Faults(faults) => Error::Mistakes(self.mistakes(faults)),
             StudyError::Cancelled { time } => Error::Stopped { time },
+            StudyError::InDraw { draw, seed, error } => match self.error(*error) {
+                Error::Broke(why) => Error::Broke(format!("draw {draw} with seed {seed}: {why}")),
+                other => other,
+            },
             StudyError::Engine(failure) => match fault::of(&failure, self.circuit()) {
                 Some(fault) => Error::Mistakes(self.mistakes(vec![fault])),
                 None => Error::Broke(failure.to_string()),

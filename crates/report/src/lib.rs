@@ -5,7 +5,7 @@
 //! Modes, Methods ──> table           text that fits the terminal
 //!                ──> plot            SVG, or characters
 //!                ──> work_precision  SVG
-//!                ──> waveform        CSV
+//!                ──> waveform, cases CSV
 //!                ──> page            one HTML file (feature `html`)
 //! ```
 //!
@@ -13,6 +13,7 @@
 //! number it prints was found earlier. It touches no files, no terminal and no clock; the same
 //! input gives the same bytes.
 
+pub mod cases;
 pub mod look;
 pub mod number;
 #[cfg(feature = "html")]

@@ -181,7 +181,7 @@ impl<W: Write> Sheet<W> {
     }
 }
 
-fn titled(text: &str, unit: &str) -> String {
+pub(crate) fn titled(text: &str, unit: &str) -> String {
     if unit.is_empty() {
         text.to_owned()
     } else {
@@ -190,7 +190,7 @@ fn titled(text: &str, unit: &str) -> String {
 }
 
 /// The digits of a record; nothing for what is not finite.
-fn digits(x: f64) -> String {
+pub(crate) fn digits(x: f64) -> String {
     serde_json::Number::from_f64(x + 0.0).map_or_else(String::new, |n| n.to_string())
 }
 

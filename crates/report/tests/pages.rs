@@ -22,6 +22,28 @@ fn the_page_of_all_cases() {
 }
 
 #[test]
+fn the_page_of_all_cases_at_their_worst_corners() {
+    let judged = sample::judged_at_corners();
+    insta::assert_snapshot!(table::judge(&judged, &sample::origin(), look(80)));
+}
+
+#[test]
+fn the_page_of_a_study() {
+    insta::assert_snapshot!(table::spread(
+        &sample::spread(),
+        &sample::origin(),
+        look(80)
+    ));
+}
+
+#[test]
+fn cases_by_readings() {
+    let mut out = Vec::new();
+    pulsewright_report::cases::cases(&sample::judged().cases, &mut out).unwrap();
+    insta::assert_snapshot!(String::from_utf8(out).unwrap());
+}
+
+#[test]
 fn the_page_of_modes() {
     insta::assert_snapshot!(table::modes(&sample::modes(), &sample::origin(), look(80)));
 }
@@ -51,6 +73,8 @@ fn pages_fit_their_width() {
             table::judge(&sample::judged(), &sample::origin(), look(width)),
             table::modes(&sample::modes(), &sample::origin(), look(width)),
             table::methods(&sample::methods(), &sample::origin(), look(width)),
+            table::judge(&sample::judged_at_corners(), &sample::origin(), look(width)),
+            table::spread(&sample::spread(), &sample::origin(), look(width)),
         ];
         for line in pages.iter().flat_map(|p| p.lines()) {
             assert!(line.chars().count() <= width, "{width}: {line}");

@@ -5,7 +5,8 @@ mod schema;
 
 use pulsewright_report::record::{
     self, Bytes, FireRecord, JudgeRecord, MethodsRecord, MistakeRecord, MistakesRecord,
-    ModesRecord, fire, judge, methods, modes,
+    ModesRecord, SliceError, SpreadRecord, fire, joined, judge, methods, modes, read_slice, slice,
+    slice_text, spread,
 };
 
 fn mistakes() -> MistakesRecord {
@@ -30,6 +31,49 @@ fn the_record_of_a_shot() {
 #[test]
 fn the_record_of_all_cases() {
     insta::assert_snapshot!(record::text(&judge(&sample::judged(), &sample::origin())));
+}
+
+#[test]
+fn the_record_of_a_study() {
+    insta::assert_snapshot!(record::text(&spread(&sample::spread(), &sample::origin())));
+}
+
+#[test]
+fn slices_that_were_written_and_read_join_to_the_record_of_the_whole() {
+    let read = |at| {
+        let text = slice_text(&slice(&sample::tally([at, 2]), &sample::origin()));
+        schema::check("pulsewright.slice-1.json", &text);
+        read_slice(text.as_bytes()).unwrap()
+    };
+    let (study, input) = joined(vec![read(2), read(1)]).unwrap();
+    assert_eq!(
+        record::text(&spread(&study, &input.origin())),
+        record::text(&spread(&sample::spread(), &sample::origin()))
+    );
+    let mut other = read(2);
+    other.input.sha256 = None;
+    assert_eq!(
+        joined(vec![read(1), other]).unwrap_err(),
+        SliceError::OfAnother(1)
+    );
+}
+
+#[test]
+fn what_is_no_slice_is_refused() {
+    let whole = record::text(&spread(&sample::spread(), &sample::origin()));
+    for text in [whole.as_bytes(), b"{}", b"\xff", b""] {
+        assert!(matches!(read_slice(text), Err(SliceError::NotASlice(_))));
+    }
+}
+
+#[test]
+fn the_record_of_all_cases_at_their_worst_corners() {
+    let text = record::text(&judge(&sample::judged_at_corners(), &sample::origin()));
+    schema::check("pulsewright.judge-1.json", &text);
+    let back: JudgeRecord = serde_json::from_str(&text).unwrap();
+    assert_eq!(record::text(&back), text);
+    let value: serde_json::Value = serde_json::from_str(&text).unwrap();
+    insta::assert_json_snapshot!((&value["cases"][0]["worst"], &value["claims"][0]));
 }
 
 #[test]
@@ -73,6 +117,11 @@ fn records_read_back_to_the_same() {
         serde_json::from_str::<JudgeRecord>(&record::text(&cases)).unwrap(),
         cases
     );
+    let study = spread(&sample::spread(), &sample::origin());
+    assert_eq!(
+        serde_json::from_str::<SpreadRecord>(&record::text(&study)).unwrap(),
+        study
+    );
     assert_eq!(
         serde_json::from_str::<MistakesRecord>(&record::text(&mistakes())).unwrap(),
         mistakes()
@@ -98,6 +147,10 @@ fn records_fit_their_schemas() {
     schema::check(
         "pulsewright.judge-1.json",
         &record::text(&judge(&sample::judged(), &sample::origin())),
+    );
+    schema::check(
+        "pulsewright.spread-1.json",
+        &record::text(&spread(&sample::spread(), &sample::origin())),
     );
     schema::check("pulsewright.mistakes-1.json", &record::text(&mistakes()));
     schema::check(

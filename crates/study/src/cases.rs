@@ -6,15 +6,18 @@
 use std::sync::Mutex;
 use std::sync::atomic::{AtomicUsize, Ordering};
 
-use pulsewright_circuit::{Circuit, LetValue};
+use pulsewright_circuit::{Circuit, LetValue, Positions};
 
 use crate::error::StudyError;
-use crate::fire::run;
+use crate::fire::{Care, measure, run};
 use crate::ladder::Turn;
 use crate::options::Options;
-use crate::outcome::{ClaimSummary, Fired, Judged, Verdict};
+use crate::outcome::{ClaimResult, ClaimSummary, Fired, Judged, Verdict, Worst};
+use crate::worst::Search;
 
 type CaseSet = Vec<(String, LetValue)>;
+/// A case at nominal values, and each claim at its worst corner.
+type OneCase = (Fired, Vec<Option<Worst>>);
 
 /// The let-values of the case with number `n`, counted from 1.
 pub(crate) fn case_set(
@@ -28,25 +31,58 @@ pub(crate) fn case_set(
     found.ok_or(StudyError::NoCase { case: n, of })
 }
 
-/// Fires and judges every case.
+/// Fires and judges every case, at nominal values and at each claim's worst corner over the
+/// tolerances.
 ///
 /// # Errors
 ///
 /// As for [`fire`](crate::fire); of several cases the first one's.
 pub fn judge(circuit: &Circuit, options: &Options<'_>) -> Result<Judged, StudyError> {
     let sets = circuit.case_sets(&options.held)?;
-    let cases = fired(circuit, &sets, options)?;
-    let claims = summaries(circuit, &cases);
-    Ok(Judged { cases, claims })
+    let options = &Options {
+        at: Positions::nominal(),
+        ..options.clone()
+    };
+    let one = |set: &CaseSet, turn: Turn| {
+        let nominal = run(circuit, set, options, turn)?;
+        let worst = Search::new(circuit, set, options, turn).all(&nominal.claims)?;
+        Ok((nominal, worst))
+    };
+    let judged: Vec<OneCase> = side_by_side(&sets, &one)?;
+    let (cases, mut worst): (Vec<Fired>, Vec<_>) = judged.into_iter().unzip();
+    if worst.iter().flatten().all(Option::is_none) {
+        worst.clear();
+    }
+    let claims = summaries(circuit, &cases, &worst);
+    Ok(Judged {
+        cases,
+        worst,
+        claims,
+    })
 }
 
-fn fired(
-    circuit: &Circuit,
+/// Fires every case at nominal values.
+///
+/// # Errors
+///
+/// As for [`fire`](crate::fire); of several cases the first one's.
+pub fn fire_cases(circuit: &Circuit, options: &Options<'_>) -> Result<Vec<Fired>, StudyError> {
+    let sets = circuit.case_sets(&options.held)?;
+    let options = &Options {
+        at: Positions::nominal(),
+        ..options.clone()
+    };
+    side_by_side(&sets, &|set, turn| run(circuit, set, options, turn))
+}
+
+/// Does something in every case, on the machine's threads; the outcomes in order, or the first
+/// error.
+fn side_by_side<T: Send>(
     sets: &[CaseSet],
-    options: &Options<'_>,
-) -> Result<Vec<Fired>, StudyError> {
+    does: &(dyn Fn(&CaseSet, Turn) -> Result<T, StudyError> + Sync),
+) -> Result<Vec<T>, StudyError> {
     let of = sets.len();
-    let one = |k: usize, set: &CaseSet| run(circuit, set, options, Turn { case: k + 1, of });
+    let one = |k: usize, set: &CaseSet| does(set, Turn { case: k + 1, of });
     let threads = std::thread::available_parallelism()
         .map_or(1, usize::from)
         .min(of);
@@ -58,7 +94,7 @@ fn fired(
             .collect();
     }
     let (next, stop) = (AtomicUsize::new(0), AtomicUsize::new(usize::MAX));
-    let done: Vec<Mutex<Option<Result<Fired, StudyError>>>> =
+    let done: Vec<Mutex<Option<Result<T, StudyError>>>> =
         sets.iter().map(|_| Mutex::new(None)).collect();
     std::thread::scope(|scope| {
         for _ in 0..threads {
@@ -87,15 +123,64 @@ fn fired(
         .collect()
 }
 
-fn summaries(circuit: &Circuit, cases: &[Fired]) -> Vec<ClaimSummary> {
+/// The worst corner of a claim with the let-values that are held; none where the claim does not
+/// apply there, or nothing varies.
+///
+/// # Errors
+///
+/// As for [`fire`](crate::fire); [`StudyError::NoClaim`].
+pub fn corner(
+    circuit: &Circuit,
+    options: &Options<'_>,
+    claim: &str,
+) -> Result<Option<Worst>, StudyError> {
+    let claims = &circuit.draft().claims;
+    let Some(k) = claims.iter().position(|c| c.name.text == claim) else {
+        return Err(StudyError::NoClaim {
+            claim: claim.to_owned(),
+        });
+    };
+    let turn = Turn { case: 1, of: 1 };
+    let at = Positions::nominal();
+    let nominal = measure(circuit, &options.held, &at, options, turn, Care::Whole)?;
+    let mut search = Search::new(circuit, &options.held, options, turn);
+    match nominal.claims.get(k) {
+        Some(claim) => search.of(k, claim),
+        None => Ok(None),
+    }
+}
+
+fn summaries(
+    circuit: &Circuit,
+    cases: &[Fired],
+    worst: &[Vec<Option<Worst>>],
+) -> Vec<ClaimSummary> {
     let claims = circuit.draft().claims.iter().enumerate();
+    let nominal = |k: usize| -> Vec<_> { cases.iter().map(|c| c.claims.get(k)).collect() };
+    let cornered = |k: usize| -> Vec<_> {
+        let at = |(nominal, n)| {
+            let worst = worst.get(n).and_then(|all: &Vec<Option<Worst>>| all.get(k));
+            worst
+                .and_then(Option::as_ref)
+                .map_or(nominal, |w| Some(&w.claim))
+        };
+        nominal(k).into_iter().zip(0..).map(at).collect()
+    };
     claims
-        .map(|(k, claim)| summary(&claim.name.text, k, cases))
+        .map(|(k, claim)| {
+            let (verdict, worst) = over(&cornered(k));
+            ClaimSummary {
+                name: claim.name.text.clone(),
+                verdict,
+                nominal: over(&nominal(k)).0,
+                worst,
+            }
+        })
         .collect()
 }
 
-fn summary(name: &str, k: usize, cases: &[Fired]) -> ClaimSummary {
-    let all: Vec<_> = cases.iter().map(|c| c.claims.get(k)).collect();
+/// The verdict over all cases, and the case of the least margin among those with it.
+fn over(all: &[Option<&ClaimResult>]) -> (Verdict, Option<usize>) {
     let of = |verdict: Verdict| {
         let with = all
             .iter()
@@ -107,16 +192,8 @@ fn summary(name: &str, k: usize, cases: &[Fired]) -> ClaimSummary {
     };
     for verdict in [Verdict::Fails, Verdict::Undecided, Verdict::Holds] {
         if let Some(worst) = of(verdict) {
-            return ClaimSummary {
-                name: name.to_owned(),
-                verdict,
-                worst: Some(worst),
-            };
+            return (verdict, Some(worst));
         }
     }
-    ClaimSummary {
-        name: name.to_owned(),
-        verdict: Verdict::Undecided,
-        worst: None,
-    }
+    (Verdict::Undecided, None)
 }

@@ -52,12 +52,42 @@ pub enum StudyError {
         /// How many there are.
         of: usize,
     },
+    /// A draw of a study that could not be fired.
+    #[error("draw {draw} with seed {seed}: {error}")]
+    InDraw {
+        /// The draw, from 1.
+        draw: u64,
+        /// The seed.
+        seed: u64,
+        /// Why.
+        error: Box<StudyError>,
+    },
+    /// A claim that the netlist does not make.
+    #[error("there is no claim `{claim}`")]
+    NoClaim {
+        /// The name asked for.
+        claim: String,
+    },
     /// The caller's hook asked to stop.
     #[error("stopped at {time} s")]
     Cancelled {
         /// How far the shot had come, s.
         time: f64,
     },
+}
+
+impl StudyError {
+    /// The same with the draw that it came in.
+    pub(crate) fn in_draw(self, draw: u64, seed: u64) -> Self {
+        match self {
+            StudyError::Cancelled { time } => StudyError::Cancelled { time },
+            error => StudyError::InDraw {
+                draw,
+                seed,
+                error: Box::new(error),
+            },
+        }
+    }
 }
 
 fn first(faults: &[Fault]) -> String {

@@ -6,7 +6,7 @@
 
 use pulsewright_circuit::draft::Claim;
 use pulsewright_circuit::setup::Element;
-use pulsewright_circuit::{Circuit, Dimension, Expr, LetValue, Setup};
+use pulsewright_circuit::{Circuit, Dimension, Expr, LetValue, Positions, Setup};
 use pulsewright_engine::Event;
 
 use crate::cases::case_set;
@@ -44,6 +44,86 @@ pub fn fire(circuit: &Circuit, options: &Options<'_>) -> Result<Fired, StudyErro
     run(circuit, &set, options, Turn { case: 1, of: 1 })
 }
 
+/// What one shot of a study brings: readings and claims, and none of the rest.
+pub(crate) struct Measured {
+    pub readings: Vec<ReadingResult>,
+    pub claims: Vec<ClaimResult>,
+    pub steps: u64,
+    pub smallest_step: f64,
+    pub largest_step: f64,
+}
+
+impl Measured {
+    /// The answers in the order of [`listed`].
+    pub fn answers(&self) -> impl Iterator<Item = &Answer> {
+        listed(&self.readings, &self.claims).map(|(.., answer)| answer)
+    }
+}
+
+/// Named readings, then those of claims under the claim's name: name, text, answer. A claim that
+/// shares its name with the reading it is on (`claim dose: dose is …`) is not listed again.
+pub(crate) fn listed<'a>(
+    readings: &'a [ReadingResult],
+    claims: &'a [ClaimResult],
+) -> impl Iterator<Item = (&'a str, &'a str, &'a Answer)> {
+    let named = readings
+        .iter()
+        .map(|r| (r.name.as_str(), r.text.as_str(), &r.answer));
+    let others = claims.iter().filter(|c| c.text != c.name);
+    named.chain(others.map(|c| (c.name.as_str(), c.text.as_str(), &c.answer)))
+}
+
+/// The error allowed in a reading of a draw, relative to its scale: what it is drawn from is
+/// known far less well, and verdicts are refined all the same.
+const ERROR: f64 = 1e-4;
+
+/// With what care a shot of a study is fired.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Care {
+    /// As one of many draws.
+    Drawn,
+    /// As a shot that is reported by itself.
+    Whole,
+}
+
+/// Fires one shot with values at positions within their spreads, for its readings and claims.
+pub(crate) fn measure(
+    circuit: &Circuit,
+    set: &[(String, LetValue)],
+    at: &Positions,
+    options: &Options<'_>,
+    turn: Turn,
+    care: Care,
+) -> Result<Measured, StudyError> {
+    let lets = circuit.lets_at(set, at)?;
+    let mut setup = circuit.setup_at(&lets, at)?;
+    if care == Care::Drawn {
+        setup.error = setup.error.max(ERROR);
+    }
+    let case = Case {
+        circuit,
+        setup: &setup,
+        lets: &lets,
+    };
+    let plan = Plan::of_readings(case, care == Care::Drawn);
+    let judge = Judge {
+        plan: &plan,
+        applies: applying(&plan)?,
+    };
+    let ladder = match care {
+        Care::Drawn => climb(&judge, &plan, options, turn)?,
+        Care::Whole => by_both(&judge, options, turn)?.0,
+    };
+    ladder.ledger.result(&setup, ladder.rules)?;
+    Ok(Measured {
+        readings: named(&plan, &ladder),
+        claims: judge.claims(&ladder.readings, ladder.rules)?,
+        steps: ladder.shot.steps,
+        smallest_step: ladder.shot.smallest_step,
+        largest_step: ladder.shot.largest_step,
+    })
+}
+
 /// Fires one case.
 pub(crate) fn run(
     circuit: &Circuit,
@@ -51,8 +131,8 @@ pub(crate) fn run(
     options: &Options<'_>,
     turn: Turn,
 ) -> Result<Fired, StudyError> {
-    let lets = circuit.lets(set)?;
-    let setup = circuit.setup(&lets)?;
+    let lets = circuit.lets_at(set, &options.at)?;
+    let setup = circuit.setup_at(&lets, &options.at)?;
     let case = Case {
         circuit,
         setup: &setup,
@@ -64,19 +144,7 @@ pub(crate) fn run(
         plan: &plan,
         applies,
     };
-    let decided = |series: &[Series], rules| judge.is_decided(series, rules);
-    let mut ladder = Ladder::climb(&plan, options, turn, &decided)?;
-    let mut opinion = opine(&plan, &ladder, options, turn);
-    if matches!(opinion, Err(StudyError::Disagreement { .. })) {
-        // Once in some thousand readings a bound is too narrow: a finer ladder settles which it is.
-        let finer = Plan {
-            tolerance: plan.tolerance / FINER,
-            ..plan.clone()
-        };
-        ladder = Ladder::climb(&finer, options, turn, &decided)?;
-        opinion = opine(&finer, &ladder, options, turn);
-    }
-    let second_opinion = opinion?;
+    let (ladder, second_opinion) = by_both(&judge, options, turn)?;
     let claims = judge.claims(&ladder.readings, ladder.rules)?;
     let balance = ladder.ledger.result(&setup, ladder.rules)?;
     let reader = Reader::new(case, &ladder.shot);
@@ -84,6 +152,11 @@ pub(crate) fn run(
     mark(&plan, &reader, &claims, &mut channels);
     Ok(Fired {
         set: settings(set),
+        stands: if options.at == Positions::nominal() {
+            Vec::new()
+        } else {
+            circuit.stands(&lets, &options.at)
+        },
         readings: named(&plan, &ladder),
         claims,
         events: ladder
@@ -115,6 +188,41 @@ pub(crate) fn run(
             .collect(),
         shot: ladder.shot,
     })
+}
+
+/// A ladder on which every claim is decided, or cannot be.
+fn climb(
+    judge: &Judge<'_, '_>,
+    plan: &Plan<'_>,
+    options: &Options<'_>,
+    turn: Turn,
+) -> Result<Ladder, StudyError> {
+    Ladder::climb(plan, options, turn, &|series, rules| {
+        judge.is_decided(series, rules)
+    })
+}
+
+/// The ladder, and what the other method says of it.
+fn by_both(
+    judge: &Judge<'_, '_>,
+    options: &Options<'_>,
+    turn: Turn,
+) -> Result<(Ladder, Option<SecondOpinion>), StudyError> {
+    let plan = judge.plan;
+    let ladder = climb(judge, plan, options, turn)?;
+    match opine(plan, &ladder, options, turn) {
+        Err(StudyError::Disagreement { .. }) => {
+            // Once in some thousand readings a bound is too narrow: a finer ladder settles it.
+            let finer = Plan {
+                tolerance: plan.tolerance / FINER,
+                ..plan.clone()
+            };
+            let ladder = climb(judge, &finer, options, turn)?;
+            let opinion = opine(&finer, &ladder, options, turn)?;
+            Ok((ladder, opinion))
+        }
+        opinion => Ok((ladder, opinion?)),
+    }
 }
 
 /// The second opinion, where it is asked for.

@@ -71,8 +71,8 @@ pub fn modes(circuit: &Circuit, options: &Options<'_>) -> Result<Modes, StudyErr
         Some(n) => case_set(circuit, options, n)?,
         None => options.held.clone(),
     };
-    let lets = circuit.lets(&set)?;
-    let setup = circuit.setup(&lets)?;
+    let lets = circuit.lets_at(&set, &options.at)?;
+    let setup = circuit.setup_at(&lets, &options.at)?;
     let case = Case {
         circuit,
         setup: &setup,

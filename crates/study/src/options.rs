@@ -1,6 +1,6 @@
 //! What a caller asks of `fire` and `judge`.
 
-use pulsewright_circuit::{Expr, LetValue};
+use pulsewright_circuit::{Expr, LetValue, Positions};
 
 /// How far a run has come.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -27,6 +27,8 @@ pub struct Options<'a> {
     pub held: Vec<(String, LetValue)>,
     /// The case to fire in place of the nominal let-values, counted from 1; `fire` only.
     pub case: Option<usize>,
+    /// Where values stand within their spreads; nominal by default, `fire` only.
+    pub at: Positions,
     /// Whether what each part had to stand is read as well.
     pub stress: bool,
     /// The channels in place of those that the netlist states.

@@ -3,6 +3,7 @@
 //! All numbers are in coherent SI units, every bound is absolute and in the same unit.
 
 use pulsewright_circuit::dimension::Dimension;
+use pulsewright_circuit::{Positions, Stand};
 use pulsewright_engine::{Event, Shot};
 
 /// One reading's answer.
@@ -104,7 +105,7 @@ pub struct ClaimResult {
 
 /// A let-value as set in a case.
 #[derive(Clone, Debug, PartialEq)]
-#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+#[cfg_attr(feature = "serde", derive(serde::Serialize, serde::Deserialize))]
 pub enum SetValue {
     /// A number with its unit.
     Number {
@@ -152,7 +153,7 @@ pub struct Stress {
 
 /// A stored-energy hazard.
 #[derive(Clone, Debug, PartialEq)]
-#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+#[cfg_attr(feature = "serde", derive(serde::Serialize, serde::Deserialize))]
 pub struct Hazard {
     /// The part, or `the circuit` for the energy of all.
     pub part: String,
@@ -227,6 +228,9 @@ pub struct Remark {
 pub struct Fired {
     /// The let-values that were set or varied.
     pub set: Set,
+    /// What the values that vary came to, where the shot was not fired at nominal ones.
+    #[cfg_attr(feature = "serde", serde(skip))]
+    pub stands: Vec<Stand>,
     /// The named readings, in the file's order.
     pub readings: Vec<ReadingResult>,
     /// The claims, in the file's order.
@@ -259,6 +263,15 @@ pub struct Fired {
     pub parts: Vec<String>,
     /// For each event, what happened in words (`closes`, `moves to pad`, `conducts`).
     pub changes: Vec<String>,
+}
+
+impl Fired {
+    /// Every answer by name: named readings, then the readings of claims, but of a claim that
+    /// shares its name with the reading it is on; each with the reading as the language writes
+    /// it.
+    pub fn answers(&self) -> impl Iterator<Item = (&str, &str, &Answer)> {
+        crate::fire::listed(&self.readings, &self.claims)
+    }
 }
 
 /// A channel: a signal along the shot.
@@ -315,8 +328,23 @@ pub struct WindowResult {
 pub struct Judged {
     /// The cases in order, the last stated let-value running fastest; one where there are none.
     pub cases: Vec<Fired>,
+    /// For each case the claims at their worst corners: none for a claim that does not apply in
+    /// it, empty where no value has a spread.
+    #[cfg_attr(feature = "serde", serde(skip))]
+    pub worst: Vec<Vec<Option<Worst>>>,
     /// Each claim over all cases.
     pub claims: Vec<ClaimSummary>,
+}
+
+/// A claim at its worst corner over the tolerances.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Worst {
+    /// The claim there.
+    pub claim: ClaimResult,
+    /// Where the values stand within their spreads.
+    pub positions: Positions,
+    /// What they come to.
+    pub corner: Vec<Stand>,
 }
 
 /// A claim over all cases.
@@ -325,9 +353,11 @@ pub struct Judged {
 pub struct ClaimSummary {
     /// Its name.
     pub name: String,
-    /// Its verdict: `fails` where any case fails, else `undecided` where any is, else `holds`;
+    /// Its verdict, in each case that of its worst corner: `fails` where any case fails, else `undecided` where any is, else `holds`;
     /// `undecided` where it applies in no case.
     pub verdict: Verdict,
+    /// The same at nominal values.
+    pub nominal: Verdict,
     /// Index of the case with the least margin among those with the verdict.
     pub worst: Option<usize>,
 }

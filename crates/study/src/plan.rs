@@ -17,8 +17,11 @@ use crate::readings::{Case, needs};
 /// Error of a step of the first mesh, over the scale of the states: coarse, but so that three
 /// halvings are mostly enough for a part in a million.
 const TOLERANCE: f64 = 5e-5;
-/// Error of the cubics of the first mesh by exact propagation.
+/// The same for the shots of a study, where a part in ten thousand is asked for.
+const DRAWN: f64 = 1e-3;
+/// Error of the cubics of the first mesh by exact propagation, and in the shots of a study.
 const EXACT: f64 = 2e-12;
+const DRAWN_EXACT: f64 = 1e-7;
 
 /// How many channels are taken where none is stated.
 const CHANNELS: usize = 8;
@@ -38,8 +41,6 @@ pub struct Plan<'a> {
     pub channels: Vec<Expr>,
     /// What to record.
     pub probes: Vec<Probe>,
-    /// Error of a step of the first mesh.
-    pub tolerance: f64,
     /// Where to land, s.
     pub landings: Vec<f64>,
     /// Whether stress is read.
@@ -48,6 +49,8 @@ pub struct Plan<'a> {
     pub stores: Vec<(usize, f64)>,
     /// Whether they are watched in a shot of their own, there being many parts.
     pub stores_apart: bool,
+    /// Error of a step of the first mesh, over the scale of the states.
+    pub tolerance: f64,
 }
 
 impl<'a> Plan<'a> {
@@ -70,15 +73,30 @@ impl<'a> Plan<'a> {
             readings,
             channels,
             probes: Vec::new(),
-            tolerance: if case.setup.method == Method::Exact {
-                EXACT
-            } else {
-                TOLERANCE
-            },
             landings: Vec::new(),
             stress: options.stress && few,
             stores: stores(case),
             stores_apart: !few,
+            tolerance: tolerance(case, false),
+        };
+        plan.record();
+        plan
+    }
+
+    /// What a shot of a study is fired for: its readings alone, as one of many from a coarser
+    /// first mesh.
+    #[must_use]
+    pub fn of_readings(case: Case<'a>, is_one_of_many: bool) -> Self {
+        let mut plan = Plan {
+            case,
+            readings: readings(case),
+            channels: Vec::new(),
+            probes: Vec::new(),
+            landings: Vec::new(),
+            stress: false,
+            stores: Vec::new(),
+            stores_apart: false,
+            tolerance: tolerance(case, is_one_of_many),
         };
         plan.record();
         plan
@@ -153,6 +171,15 @@ impl<'a> Plan<'a> {
     #[must_use]
     pub fn claims(&self) -> &'a [Claim] {
         &self.case.circuit.draft().claims
+    }
+}
+
+fn tolerance(case: Case<'_>, is_one_of_many: bool) -> f64 {
+    match (case.setup.method == Method::Exact, is_one_of_many) {
+        (false, false) => TOLERANCE,
+        (false, true) => DRAWN,
+        (true, false) => EXACT,
+        (true, true) => DRAWN_EXACT,
     }
 }
 

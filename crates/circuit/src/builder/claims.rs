@@ -144,6 +144,7 @@ impl Builder {
             answers,
             when,
             allowing: None,
+            in_shots: None,
             span: Span::NONE,
         });
         self
@@ -189,6 +190,22 @@ impl Builder {
     #[must_use]
     pub fn allowing(self, amount: impl Into<Expr>) -> Self {
         self.of_claim("allowing", |claim| claim.allowing = Some(amount.into()))
+    }
+
+    /// `in at least SHARE of shots`, of the claim before it.
+    ///
+    /// ```
+    /// # use pulsewright_circuit::builder::*;
+    /// let built = Builder::new("")
+    ///     .claim("dose", energy_into("r"), at_most(joules(1.0)))
+    ///     .in_at_least(percent(99.7));
+    /// assert!(built.draft().claims[0].in_shots.is_some());
+    /// ```
+    #[must_use]
+    pub fn in_at_least(self, share: impl Into<Expr>) -> Self {
+        self.of_claim("in at least … of shots", |claim| {
+            claim.in_shots = Some(share.into());
+        })
     }
 
     fn of_claim(mut self, qualifier: &'static str, change: impl FnOnce(&mut Claim)) -> Self {

@@ -407,9 +407,50 @@ impl Builder {
     /// # assert_eq!(built.draft().parts.len(), 1);
     /// ```
     #[must_use]
-    pub fn tolerance(mut self, amount: impl Into<Expr>) -> Self {
+    pub fn tolerance(self, amount: impl Into<Expr>) -> Self {
+        self.spread("tolerance", SpreadKind::Tolerance(amount.into()))
+    }
+
+    /// `tolerance LOW to HIGH`, of the part's own value.
+    ///
+    /// ```
+    /// # use pulsewright_circuit::builder::*;
+    /// let built = Builder::new("").capacitor("bank", "a", "b", farads(32e-6))
+    ///     .tolerance_between(percent(-20.0), percent(50.0));
+    /// # assert!(built.draft().parts.len() == 1);
+    /// ```
+    #[must_use]
+    pub fn tolerance_between(self, low: impl Into<Expr>, high: impl Into<Expr>) -> Self {
+        self.spread("tolerance", SpreadKind::Limits(low.into(), high.into()))
+    }
+
+    /// `standard deviation SHARE`, of the part's own value: normal, cut at three.
+    ///
+    /// ```
+    /// # use pulsewright_circuit::builder::*;
+    /// let built = Builder::new("").capacitor("bank", "a", "b", farads(32e-6)).standard_deviation(percent(2.0));
+    /// # assert!(built.draft().parts.len() == 1);
+    /// ```
+    #[must_use]
+    pub fn standard_deviation(self, amount: impl Into<Expr>) -> Self {
+        self.spread("standard deviation", SpreadKind::Deviation(amount.into()))
+    }
+
+    /// `standard deviation SHARE lognormal`, of the part's own value.
+    ///
+    /// ```
+    /// # use pulsewright_circuit::builder::*;
+    /// let built = Builder::new("").resistor("body", "a", "b", ohms(75.0)).lognormal(percent(25.0));
+    /// # assert!(built.draft().parts.len() == 1);
+    /// ```
+    #[must_use]
+    pub fn lognormal(self, share: impl Into<Expr>) -> Self {
+        self.spread("standard deviation", SpreadKind::Lognormal(share.into()))
+    }
+
+    fn spread(mut self, word: &'static str, kind: SpreadKind) -> Self {
         let spread = Spread {
-            kind: SpreadKind::Tolerance(amount.into()),
+            kind,
             span: Span::NONE,
         };
         match self
@@ -419,7 +460,7 @@ impl Builder {
             .and_then(|p| own_value(&mut p.kind))
         {
             Some(value) => value.spread = Some(spread),
-            None => self.misplace("tolerance", "a part with a value"),
+            None => self.misplace(word, "a part with a value"),
         }
         self
     }

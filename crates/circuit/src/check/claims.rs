@@ -43,6 +43,9 @@ impl Checker<'_> {
                 self.wants(e, found, &format!("what `{}` allows", claim.name), d);
             }
         }
+        if let Some(e) = &claim.in_shots {
+            self.share(e, &format!("the share of shots of `{}`", claim.name));
+        }
         for condition in &claim.when {
             self.condition_of_claim(condition);
         }

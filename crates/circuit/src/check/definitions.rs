@@ -30,18 +30,28 @@ pub(super) fn order(draft: &Draft, index: &Index, faults: &mut Vec<Fault>) -> Or
         Item::Signal(i) => n_lets + i,
         Item::Reading(i) => n_lets + n_signals + i,
     };
-    let uses: Vec<Vec<usize>> = items
+    let mut uses: Vec<Vec<usize>> = items
         .iter()
         .map(|(_, _, e)| {
             let mut found = Vec::new();
             crate::walk::names(e, &mut |name, _| {
                 found.extend(index.names.get(name).map(|i| place(*i)))
             });
-            found.sort_unstable();
-            found.dedup();
             found
         })
         .collect();
+    for (l, found) in draft.lets.iter().zip(&mut uses) {
+        let spread = l.value.spread.as_ref();
+        for e in spread.into_iter().flat_map(|s| s.kind.amounts()) {
+            crate::walk::names(e, &mut |name, _| {
+                found.extend(index.names.get(name).map(|i| place(*i)))
+            });
+        }
+    }
+    for found in &mut uses {
+        found.sort_unstable();
+        found.dedup();
+    }
     let circles = Circles::find(&uses);
     for path in circles.paths {
         let named = path

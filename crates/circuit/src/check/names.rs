@@ -150,7 +150,10 @@ fn shared(draft: &Draft, faults: &mut Vec<Fault>) {
     all.sort_by_key(|(name, ..)| name.span.start);
     let (mut names, mut claims) = (HashMap::new(), HashMap::new());
     for (name, space, apart) in &all {
-        form(name, *space, faults);
+        // What a part's rating claims is named by the part, whose name has been looked at.
+        if *space != NameSpace::Claim || !name.text.contains('.') {
+            form(name, *space, faults);
+        }
         if *apart {
             twice(&mut claims, name, space.word(), faults);
         }

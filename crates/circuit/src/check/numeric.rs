@@ -14,6 +14,7 @@ use crate::numbers::Setter;
 use crate::parts::{Control, Part, PartKind};
 use crate::schedule::TriggerKind;
 use crate::slots::slots;
+use crate::vary::Moves;
 
 /// How many parts, readings and claims are evaluated in all for single cases.
 const MOST: usize = 5_000_000;
@@ -33,7 +34,14 @@ impl Checker<'_> {
         let (draft, index) = (self.draft, self.index);
         // Taken out while numbers are put in, which reads it and writes faults.
         let types = std::mem::take(&mut self.types);
-        let (nominal, faults) = lets::evaluate(draft, index, &types, &[], &Given::default());
+        let (nominal, faults) = lets::evaluate(
+            draft,
+            index,
+            &types,
+            &[],
+            &Moves::default(),
+            &Given::default(),
+        );
         let sound_lets = faults.is_empty();
         self.faults.extend(faults);
         let lookup = lets::lookup(index, &nominal);
@@ -179,7 +187,8 @@ impl Checker<'_> {
             case: case.clone(),
             spread: false,
         };
-        let (values, mut faults) = lets::evaluate(draft, index, types, &row.set, &given);
+        let (values, mut faults) =
+            lets::evaluate(draft, index, types, &row.set, &Moves::default(), &given);
         let lookup = lets::lookup(index, &values);
         let mut setter = Setter::new(draft, index, types, &lookup, case);
         // What the span, the step and the allowed error are as written was said already.

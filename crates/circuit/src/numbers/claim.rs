@@ -19,6 +19,10 @@ impl Setter<'_> {
                 Bound::AtLeast(0.0),
             );
         }
+        if let Some(e) = &claim.in_shots {
+            let what = format!("the share of shots of `{name}`");
+            self.share(e, &what, Bound::From(0.0, 1.0));
+        }
         match &claim.relation {
             Relation::AtMost(x) | Relation::AtLeast(x) => {
                 self.limit(x, name, dimension);

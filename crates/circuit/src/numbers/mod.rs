@@ -25,6 +25,7 @@ use crate::index::Index;
 use crate::setup::{Limits, Setup};
 use crate::slots::Slot;
 use crate::spread::{SpreadKind, Value};
+use crate::vary::{Moves, Shift};
 
 /// The pass that puts numbers in.
 pub(crate) struct Setter<'a> {
@@ -35,6 +36,8 @@ pub(crate) struct Setter<'a> {
     /// The case in words, where it is not that written.
     pub case: Vec<String>,
     pub span: Option<f64>,
+    /// Where the values stand that a study moves.
+    pub moves: Moves,
     pub faults: Vec<Fault>,
     pub remarks: Vec<Fault>,
 }
@@ -59,6 +62,7 @@ impl<'a> Setter<'a> {
             numbers,
             case,
             span: None,
+            moves: Moves::default(),
             faults: Vec::new(),
             remarks: Vec::new(),
         };
@@ -171,7 +175,21 @@ impl<'a> Setter<'a> {
                 break;
             }
         }
-        Some(x)
+        let moved = self.shift_of(value).map_or(x, |shift| shift.of(x));
+        (moved == x || self.held(&value.nominal, moved, what, (dimension, false), bound, true))
+            .then_some(moved)
+    }
+
+    /// What a study moves a value by; `None` where it stays nominal.
+    pub fn shift_of(&self, value: &Value) -> Option<Shift> {
+        let (p, spread) = (self.moves.of(value)?, value.spread.as_ref()?);
+        Some(self.shift(&spread.kind, p))
+    }
+
+    /// The shift of a spread at a position.
+    pub fn shift(&self, kind: &SpreadKind, p: f64) -> Shift {
+        let amount = |e: &Expr| Some((self.numbers.number(e).ok()?, self.is_share(e)));
+        Shift::at(kind, p, &amount)
     }
 
     /// The least and the greatest value that a spread allows.

@@ -96,7 +96,11 @@ impl Setter<'_> {
     }
 
     fn source(&mut self, part: &Part, value: &Value) -> Option<Formula> {
-        self.formula(&value.nominal, &format!("`{}`", part.name))
+        let source = self.formula(&value.nominal, &format!("`{}`", part.name))?;
+        Some(match self.shift_of(value) {
+            Some(shift) => shift.of_formula(source),
+            None => source,
+        })
     }
 
     fn index_of(&self, part: &str) -> Option<usize> {

@@ -85,7 +85,7 @@ impl Setter<'_> {
                 })
             }
             TriggerKind::Delay { delay, edge } => {
-                let formula = self.time(&delay.nominal, &format!("a delay of `{name}`"));
+                let mut formula = self.time(&delay.nominal, &format!("a delay of `{name}`"));
                 if let Some(Formula::Number(_)) = formula {
                     self.value(
                         delay,
@@ -93,6 +93,9 @@ impl Setter<'_> {
                         Dimension::SECOND,
                         Bound::AtLeast(0.0),
                     )?;
+                }
+                if let Some(shift) = self.shift_of(delay) {
+                    formula = formula.map(|f| shift.of_formula(f));
                 }
                 Some(SetTrigger::Delay {
                     delay: formula?,

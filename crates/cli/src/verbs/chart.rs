@@ -2,6 +2,7 @@
 
 use super::deliver;
 use super::fire::shot;
+use crate::args::Which;
 use crate::exit::Ending;
 use crate::input;
 use crate::say;
@@ -16,13 +17,13 @@ use std::path::Path;
 pub fn chart(
     file: &Path,
     settings: &[String],
-    case: Option<u32>,
+    which: &Which,
     between: Option<&[String]>,
     shell: &Shell,
 ) -> Result<Ending, Trouble> {
     let between = between.map(interval).transpose()?;
     let netlist = input::netlist(file, settings, shell)?;
-    let fired = shot(&netlist, &input::case(&netlist, case)?, false, shell)?;
+    let fired = shot(&netlist, which, false, shell)?;
     say::remarks(shell, &netlist, &fired.remarks);
     let plot = match between {
         None => Plot::whole(&fired),

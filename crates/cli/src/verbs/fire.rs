@@ -2,15 +2,18 @@
 
 use super::deliver;
 use super::watch::watched;
+use crate::args::Which;
 use crate::exit::Ending;
 use crate::input;
 use crate::output::Target;
 use crate::say;
 use crate::shell::Shell;
 use crate::trouble::Trouble;
+use pulsewright::circuit::Positions;
 use pulsewright::report::number::{brief, quantity};
 use pulsewright::report::plot::{Plot, terminal};
 use pulsewright::report::{record, table};
+use pulsewright::study::spread::draw;
 use pulsewright::{Fired, Netlist, Options, Settings};
 use std::path::Path;
 
@@ -27,12 +30,12 @@ pub struct Form {
 pub fn fire(
     file: &Path,
     settings: &[String],
-    case: Option<u32>,
+    which: &Which,
     form: Form,
     shell: &Shell,
 ) -> Result<Ending, Trouble> {
     let netlist = input::netlist(file, settings, shell)?;
-    let fired = shot(&netlist, &input::case(&netlist, case)?, true, shell)?;
+    let fired = shot(&netlist, which, true, shell)?;
     let origin = netlist.origin();
     let text = if form.json {
         record::text(&record::fire(&fired, &origin))
@@ -53,17 +56,20 @@ pub fn fire(
     })
 }
 
-/// Fires one shot with these let-values, until it ends or a signal comes; on request with the
-/// stress on every part.
+/// Fires the shot that is asked for, until it ends or a signal comes; on request with the stress
+/// on every part.
 pub fn shot(
     netlist: &Netlist,
-    set: &Settings,
+    which: &Which,
     stress: bool,
     shell: &Shell,
 ) -> Result<Fired, Trouble> {
+    let set = input::case(netlist, which.case.case)?;
+    let at = positions(netlist, &set, which, shell)?;
     let fired = watched(shell, |hook| {
         netlist.fire(&Options {
-            held: set.clone(),
+            held: set,
+            at,
             stress,
             hook: Some(hook),
             ..Options::default()
@@ -71,6 +77,44 @@ pub fn shot(
     })?;
     details(shell, &fired);
     Ok(fired)
+}
+
+/// Where the values stand in the shot that is asked for.
+pub(super) fn positions(
+    netlist: &Netlist,
+    set: &Settings,
+    which: &Which,
+    shell: &Shell,
+) -> Result<Positions, Trouble> {
+    let varies = !netlist.circuit().varying().is_empty();
+    match (&which.corner, which.draw) {
+        (None, None) => Ok(Positions::nominal()),
+        _ if !varies => Err(Trouble::Usage(
+            "there is neither draw nor corner: no value of the netlist has a spread".to_owned(),
+        )),
+        (None, Some(k)) => Ok(draw(netlist.circuit(), which.seed.seed, k)),
+        (Some(claim), _) => {
+            let claims = &netlist.circuit().draft().claims;
+            if !claims.iter().any(|c| c.name.text == *claim) {
+                let all: Vec<&str> = claims.iter().map(|c| c.name.text.as_str()).collect();
+                return Err(Trouble::Usage(format!(
+                    "--corner {claim}: there is no such claim; the claims are {}",
+                    all.join(", ")
+                )));
+            }
+            let found = watched(shell, |hook| {
+                let options = Options {
+                    held: set.clone(),
+                    hook: Some(hook),
+                    ..Options::default()
+                };
+                netlist.corner(&options, claim)
+            })?;
+            found.map(|worst| worst.positions).ok_or_else(|| {
+                Trouble::Usage(format!("--corner {claim}: the claim does not apply there"))
+            })
+        }
+    }
 }
 
 /// What `-v` says of a shot.

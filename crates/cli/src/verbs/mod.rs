@@ -7,10 +7,13 @@ mod fire;
 mod judge;
 mod list;
 mod manual;
+mod merge;
 mod methods;
 mod modes;
 mod neaten;
 mod report;
+mod spread;
+mod table;
 mod watch;
 mod waveform;
 
@@ -32,6 +35,8 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             | Verb::Judge { json: true, .. }
             | Verb::Modes { json: true, .. }
             | Verb::Methods { json: true, .. }
+            | Verb::Spread { json: true, .. }
+            | Verb::Merge { json: true, .. }
     );
     let done = match verb {
         Verb::Check {
@@ -47,13 +52,13 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Fire {
             file,
             settings,
-            case,
+            which,
             json,
             strict,
         } => fire::fire(
             &file,
             &settings.set,
-            case.case,
+            &which,
             fire::Form { json, strict },
             shell,
         ),
@@ -65,9 +70,9 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
         Verb::Modes {
             file,
             settings,
-            case,
+            which,
             json,
-        } => modes::modes(&file, &settings.set, case.case, json, shell),
+        } => modes::modes(&file, &settings.set, &which, json, shell),
         Verb::Methods {
             file,
             settings,
@@ -88,18 +93,30 @@ pub fn run(verb: Verb, shell: &Shell) -> Ending {
             },
             shell,
         ),
+        Verb::Spread {
+            file,
+            settings,
+            shots,
+            seed,
+            slice,
+            threads,
+            json,
+        } => spread::draws(shots, seed.seed, slice.as_deref(), threads)
+            .and_then(|draws| spread::spread(&file, &settings.set, draws, json, shell)),
+        Verb::Table { file, settings } => table::table(&file, &settings.set, shell),
+        Verb::Merge { files, json } => merge::merge(&files, json, shell),
         Verb::Waveform {
             file,
             settings,
-            case,
+            which,
             every,
-        } => waveform::waveform(&file, &settings.set, case.case, every.as_deref(), shell),
+        } => waveform::waveform(&file, &settings.set, &which, every.as_deref(), shell),
         Verb::Chart {
             file,
             settings,
-            case,
+            which,
             between,
-        } => chart::chart(&file, &settings.set, case.case, between.as_deref(), shell),
+        } => chart::chart(&file, &settings.set, &which, between.as_deref(), shell),
         Verb::Report {
             file,
             settings,

@@ -1,7 +1,9 @@
 //! `modes`: natural frequencies and damping in each topology that a shot passes through.
 
 use super::deliver;
+use super::fire::positions;
 use super::watch::watched;
+use crate::args::Which;
 use crate::exit::Ending;
 use crate::input;
 use crate::shell::Shell;
@@ -14,15 +16,17 @@ use std::path::Path;
 pub fn modes(
     file: &Path,
     settings: &[String],
-    case: Option<u32>,
+    which: &Which,
     json: bool,
     shell: &Shell,
 ) -> Result<Ending, Trouble> {
     let netlist = input::netlist(file, settings, shell)?;
-    let held = input::case(&netlist, case)?;
+    let held = input::case(&netlist, which.case.case)?;
+    let at = positions(&netlist, &held, which, shell)?;
     let found = watched(shell, |hook| {
         netlist.modes(&Options {
             held,
+            at,
             hook: Some(hook),
             ..Options::default()
         })

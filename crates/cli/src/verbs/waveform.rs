@@ -2,6 +2,7 @@
 
 use super::deliver;
 use super::fire::shot;
+use crate::args::Which;
 use crate::exit::Ending;
 use crate::input;
 use crate::say;
@@ -15,7 +16,7 @@ use std::path::Path;
 pub fn waveform(
     file: &Path,
     settings: &[String],
-    case: Option<u32>,
+    which: &Which,
     every: Option<&str>,
     shell: &Shell,
 ) -> Result<Ending, Trouble> {
@@ -23,7 +24,7 @@ pub fn waveform(
         .map(|written| input::seconds("--every", written))
         .transpose()?;
     let netlist = input::netlist(file, settings, shell)?;
-    let fired = shot(&netlist, &input::case(&netlist, case)?, false, shell)?;
+    let fired = shot(&netlist, which, false, shell)?;
     say::remarks(shell, &netlist, &fired.remarks);
     let mut bytes = Vec::new();
     let written = match every {

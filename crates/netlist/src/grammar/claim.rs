@@ -4,12 +4,12 @@
 //! claim    = "claim" NAME ":" EXPR "is" relation ( "," clause )*
 //! relation = "at most" EXPR | "at least" EXPR | "between" EXPR "and" EXPR
 //!          | "within" EXPR [ "or" EXPR ] "of" EXPR | "within" EXPR "percentage points of" EXPR
-//! clause   = "answers" TEXT | "allowing" EXPR | "when" condition
+//! clause   = "answers" TEXT | "allowing" EXPR | "when" condition | "in at least" EXPR "of shots"
 //! ```
 
 use pulsewright_circuit::draft::{Applies, Claim, Comparison, Relation};
 use pulsewright_circuit::expr::Operator;
-use pulsewright_circuit::{Dimension, Expr, ExprKind, Name};
+use pulsewright_circuit::{Dimension, Expr, ExprKind, Name, Span};
 
 use super::{Parser, Read};
 use crate::lex::unquote;
@@ -18,7 +18,7 @@ use crate::token::Kind;
 use pulsewright_circuit::near::nearest;
 
 /// The words that begin a clause.
-const CLAUSES: &[&str] = &["answers", "when", "allowing"];
+const CLAUSES: &[&str] = &["answers", "when", "allowing", "in"];
 
 impl Parser<'_> {
     pub(super) fn claim(&mut self) -> Read<Claim> {
@@ -36,6 +36,7 @@ impl Parser<'_> {
             answers: Vec::new(),
             when: Vec::new(),
             allowing: None,
+            in_shots: None,
             span: self.whole_span(),
         };
         while self.take(Kind::Comma) {
@@ -118,7 +119,7 @@ impl Parser<'_> {
     }
 
     /// The dimension of an expression of let-values, where it can be told.
-    fn dimension(&self, expr: &Expr, depth: usize) -> Option<Dimension> {
+    pub(super) fn dimension(&self, expr: &Expr, depth: usize) -> Option<Dimension> {
         if depth > 500 {
             return None;
         }
@@ -162,31 +163,26 @@ impl Parser<'_> {
                 self.at += 1;
                 let allowing = self.expression()?;
                 if claim.allowing.is_some() {
-                    let within = self.subject();
-                    return self.slip(
-                        place,
-                        What::Twice {
-                            word: "allowing".to_owned(),
-                            within,
-                        },
-                    );
+                    return self.twice(place, "allowing");
                 }
                 claim.allowing = Some(allowing);
             }
             Some("in") => {
-                return self.slip(
-                    place,
-                    What::Later {
-                        what: "`in at least … of shots`".to_owned(),
-                    },
-                );
+                self.at += 1;
+                self.expect_words(&["at", "least"])?;
+                let share = self.expression()?;
+                self.expect_words(&["of", "shots"])?;
+                if claim.in_shots.is_some() {
+                    return self.twice(place, "in at least");
+                }
+                claim.in_shots = Some(share);
             }
             Some(word) => {
                 let (near, word) = (
                     nearest(word, CLAUSES.iter().copied()).map(str::to_owned),
                     word.to_owned(),
                 );
-                let known = "`answers`, `when` and `allowing`";
+                let known = "`answers`, `when`, `allowing` and `in at least`";
                 return self.slip(
                     place,
                     What::NoQualifier {
@@ -197,9 +193,17 @@ impl Parser<'_> {
                     },
                 );
             }
-            None => return self.expected("`answers`, `when` or `allowing`", CLAUSES),
+            None => {
+                return self.expected("`answers`, `when`, `allowing` or `in at least`", CLAUSES);
+            }
         }
         self.over()
+    }
+
+    fn twice(&mut self, place: Span, word: &str) -> Read<()> {
+        let within = self.subject();
+        let word = word.to_owned();
+        self.slip(place, What::Twice { word, within })
     }
 
     /// A text in quotes.

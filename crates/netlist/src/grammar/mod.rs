@@ -79,6 +79,8 @@ pub(crate) struct Parser<'a> {
     in_delay: bool,
     /// Signs by the number of their token in the statement.
     marks: Vec<(usize, Mark)>,
+    /// The ratings of the part that is read.
+    rated: Vec<Expr>,
 }
 
 impl<'a> Parser<'a> {
@@ -94,6 +96,7 @@ impl<'a> Parser<'a> {
             named_by: 1,
             in_delay: false,
             marks,
+            rated: Vec::new(),
         }
     }
 

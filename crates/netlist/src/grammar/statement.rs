@@ -22,7 +22,8 @@ pub(crate) enum Made {
     Title(String),
     Note(String),
     Let(Let),
-    Part(Part),
+    /// With the claims that its ratings make.
+    Part(Part, Vec<Claim>),
     Signal(Named),
     Reading(Named),
     Claim(Claim),
@@ -88,7 +89,7 @@ impl Parser<'_> {
             return self.time_step();
         }
         if PARTS.contains(&word) {
-            return self.part(word).map(Made::Part);
+            return self.part(word);
         }
         if STATEMENTS.contains(&word) {
             return self.of_word(word);
@@ -207,7 +208,7 @@ impl Parser<'_> {
             Some(found) if self.looks_like(found) => {
                 self.note(place, what);
                 if PARTS.contains(&found) {
-                    self.part(found).map(Made::Part)
+                    self.part(found)
                 } else {
                     self.of_word(found)
                 }

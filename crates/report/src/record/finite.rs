@@ -48,6 +48,18 @@ impl TryFrom<f64> for Finite {
 pub struct Ordered<T>(pub Vec<(String, T)>);
 
 impl<T> Ordered<T> {
+    /// Nothing.
+    #[must_use]
+    pub const fn none() -> Self {
+        Ordered(Vec::new())
+    }
+
+    /// Whether it holds nothing.
+    #[must_use]
+    pub fn is_empty(&self) -> bool {
+        self.0.is_empty()
+    }
+
     /// The value of a name.
     #[must_use]
     pub fn named(&self, name: &str) -> Option<&T> {

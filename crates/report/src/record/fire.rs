@@ -2,8 +2,8 @@
 
 use super::shot::events;
 use super::{
-    BalanceRecord, ClaimRecord, EventRecord, HazardRecord, Input, OpinionRecord, Origin, Program,
-    ReadingRecord, RemarkRecord, Run, StressRecord,
+    BalanceRecord, ClaimRecord, EventRecord, Finite, HazardRecord, Input, OpinionRecord, Ordered,
+    Origin, Program, ReadingRecord, RemarkRecord, Run, StressRecord, stands,
 };
 use pulsewright_study::outcome::Fired;
 use serde::{Deserialize, Serialize};
@@ -17,6 +17,9 @@ pub struct FireRecord {
     pub program: Program,
     /// What was fired.
     pub input: Input,
+    /// What the values that vary came to, where the shot is a draw's or a corner's.
+    #[serde(skip_serializing_if = "Ordered::is_empty", default = "Ordered::none")]
+    pub values: Ordered<Finite>,
     /// How it was run.
     pub run: Run,
     /// The named readings, in the file's order.
@@ -44,6 +47,7 @@ pub fn fire(fired: &Fired, origin: &Origin<'_>) -> FireRecord {
         record: "pulsewright.fire/1".to_owned(),
         program: Program::this(),
         input: Input::new(origin, &fired.set),
+        values: stands(&fired.stands),
         run: Run::of([fired]),
         readings: fired.readings.iter().map(Into::into).collect(),
         claims: fired.claims.iter().map(Into::into).collect(),

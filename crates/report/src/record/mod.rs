@@ -18,10 +18,11 @@ mod modes;
 mod opinion;
 mod reading;
 mod shot;
+mod spread;
 
 pub use finite::{Finite, Ordered};
 pub use fire::{FireRecord, fire};
-pub use judge::{CaseRecord, JudgeRecord, SummaryRecord, WorstRecord, judge};
+pub use judge::{CaseRecord, CornerRecord, JudgeRecord, SummaryRecord, WorstRecord, judge};
 pub use methods::{ComparedRecord, MethodRecord, MethodsRecord, RunRecord, methods};
 pub use mistakes::{Bytes, MistakeRecord, MistakesRecord};
 pub use modes::{ModeRecord, ModesRecord, TopologyRecord, modes};
@@ -33,6 +34,12 @@ pub use shot::{
     TotalRecord,
 };
 
+pub use spread::{
+    DrawRecord, ReadingSpreadRecord, ShareRecord, SliceError, SliceRecord, SpreadCaseRecord,
+    SpreadRecord, SpreadVerdictRecord, joined, read_slice, slice, slice_text, spread,
+};
+
+use pulsewright_circuit::Stand;
 use pulsewright_study::outcome::{Fired, Set, SetValue};
 use serde::{Deserialize, Serialize};
 
@@ -121,6 +128,23 @@ pub(crate) fn set_record(set: &Set) -> Ordered<SetRecord> {
     )
 }
 
+/// What values that vary came to, in coherent SI units.
+pub(crate) fn stands(all: &[Stand]) -> Ordered<Finite> {
+    let number = |s: &Stand| Some((s.name.clone(), Finite::new(s.value)?));
+    Ordered(all.iter().filter_map(number).collect())
+}
+
+/// A record's let-value as results hold it.
+pub(crate) fn set_value(record: &SetRecord) -> SetValue {
+    match record {
+        SetRecord::Number { value, unit } => SetValue::Number {
+            value: value.map_or(f64::NAN, Finite::value),
+            unit: unit.clone(),
+        },
+        SetRecord::Circuit(words) => SetValue::Circuit(words.clone()),
+    }
+}
+
 /// How it was run.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 pub struct Run {
@@ -128,7 +152,7 @@ pub struct Run {
     pub method: String,
     /// How long the shot was followed, s.
     pub span: Option<Finite>,
-    /// Accepted steps of the finest shot; of all cases together under `judge`.
+    /// Accepted steps of the finest shot; of all shots together under `judge` and `spread`.
     pub steps: u64,
     /// The sizes of the steps, s.
     pub step: StepRecord,

@@ -70,7 +70,7 @@ pub struct ClaimRecord {
 }
 
 impl AnswerRecord {
-    fn new(answer: &Answer, text: &str) -> Self {
+    pub(crate) fn new(answer: &Answer, text: &str) -> Self {
         let mut record = AnswerRecord {
             value: None,
             unit: unit(answer, text),

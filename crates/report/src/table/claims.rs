@@ -87,11 +87,16 @@ pub(super) fn margin(claim: &ClaimResult) -> Cell {
 
 /// What a claim asks, and of which requirements.
 pub(super) fn asked(claim: &ClaimResult) -> String {
-    let asked = format!("{}: {} {}", claim.name, claim.text, claim.relation);
-    if claim.answers.is_empty() {
-        asked
+    stated(&claim.name, &claim.text, &claim.relation, &claim.answers)
+}
+
+/// `dose: energy into chest is at least 5 J; answers REQ-1`
+pub(super) fn stated(name: &str, text: &str, relation: &str, answers: &[String]) -> String {
+    let stated = format!("{name}: {text} {relation}");
+    if answers.is_empty() {
+        stated
     } else {
-        format!("{asked}; answers {}", claim.answers.join(", "))
+        format!("{stated}; answers {}", answers.join(", "))
     }
 }
 

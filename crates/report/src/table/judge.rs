@@ -4,11 +4,11 @@ use super::claims::{asked, reason};
 use super::fire::{defaults, opening};
 use super::hazards::{hazards, worst};
 use super::opinion::opinion;
-use super::{Align, Cell, Grid, bound_cell, remarks, set_in_words, tone};
+use super::{Align, Cell, Grid, bound_cell, counted, remarks, set_in_words, stands_in_words, tone};
 use crate::look::{Look, Tone, heading, paragraph};
 use crate::number::{Scale, quantity};
 use crate::record::{Origin, unit_of};
-use pulsewright_study::outcome::{ClaimResult, Fired, Found, Judged, Set, Verdict};
+use pulsewright_study::outcome::{ClaimResult, Fired, Found, Judged, Set, Verdict, Worst};
 
 /// Most significant digits of a margin.
 const MARGIN_DIGITS: i32 = 6;
@@ -34,6 +34,7 @@ pub fn judge(judged: &Judged, origin: &Origin<'_>, look: Look) -> String {
     );
     for k in 0..judged.claims.len() {
         claim(&mut out, look, k, &judged.cases);
+        corners(&mut out, look, k, &judged.worst);
     }
     opinion(&mut out, look, &judged.cases);
     remarks(
@@ -89,6 +90,56 @@ fn claim(out: &mut String, look: Look, k: usize, cases: &[Fired]) {
     .headed(["case", "value", "bound", "margin", "verdict", "with"]);
     for (n, (fired, result)) in results.iter().enumerate() {
         grid.row(columns.row(n, &fired.set, result));
+    }
+    grid.write(out, look);
+}
+
+/// Adds where the claim is worst over the tolerances, a row a case.
+fn corners(out: &mut String, look: Look, k: usize, worst: &[Vec<Option<Worst>>]) {
+    let all: Vec<(usize, &Worst)> = worst
+        .iter()
+        .enumerate()
+        .filter_map(|(n, case)| Some((n, case.get(k)?.as_ref()?)))
+        .collect();
+    let Some((_, first)) = all.first() else {
+        return;
+    };
+    let unit = unit_of(&first.claim.answer, &first.claim.text);
+    let values = all
+        .iter()
+        .filter_map(|(_, w)| value(&w.claim))
+        .map(|(v, _)| v);
+    let margins = all.iter().filter_map(|(_, w)| margin(&w.claim));
+    let (values, margins) = (Scale::of(&unit, values), Scale::of(&unit, margins));
+    let mut grid = Grid::new([
+        Align::Right,
+        Align::Point,
+        Align::Point,
+        Align::Left,
+        Align::Text,
+    ])
+    .headed(["case", "worst value", "margin", "verdict", "at"]);
+    for (n, worst) in &all {
+        let claim = &worst.claim;
+        let bound = value(claim).map(|(_, bound)| bound);
+        let shown = value(claim).map_or_else(
+            || Cell::toned(missing(claim), Tone::Open),
+            |(value, bound)| values.brief(value, Some(bound), MARGIN_DIGITS).into(),
+        );
+        let margin =
+            margin(claim).map_or_else(String::new, |m| margins.brief(m, bound, MARGIN_DIGITS));
+        let at = stands_in_words(&worst.corner);
+        let text = claim
+            .reason
+            .as_ref()
+            .map_or(at.clone(), |why| format!("{at}: {why}"));
+        grid.row([
+            (n + 1).to_string().into(),
+            shown,
+            margin.into(),
+            Cell::toned(claim.verdict.words(), tone(claim.verdict)),
+            text.into(),
+        ]);
     }
     grid.write(out, look);
 }
@@ -186,24 +237,42 @@ fn summary(out: &mut String, look: Look, judged: &Judged) {
         let at = summary.worst.and_then(|w| Some((w, judged.cases.get(w)?)));
         let text = at.map_or_else(
             || "applies in no case".to_owned(),
-            |(w, fired)| nearest(w, fired, k),
+            |(w, fired)| {
+                let worst = judged.worst.get(w).and_then(|all| all.get(k)?.as_ref());
+                nearest(w, fired, k, worst, summary.nominal)
+            },
         );
         let verdict = Cell::toned(summary.verdict.words(), tone(summary.verdict));
         grid.row([summary.name.as_str().into(), verdict, text.into()]);
     }
     grid.write(out, look);
     out.push('\n');
-    let (line, tone) = total(judged);
+    let verdicts: Vec<Verdict> = judged.claims.iter().map(|c| c.verdict).collect();
+    let (line, tone) = total(&verdicts, &counted(judged.cases.len(), "case"));
     paragraph(out, look, 0, &line, tone);
 }
 
 /// `margin 8.31 J in case 1, load = 25 Ω`
-fn nearest(index: usize, fired: &Fired, k: usize) -> String {
+fn nearest(
+    index: usize,
+    fired: &Fired,
+    k: usize,
+    worst: Option<&Worst>,
+    nominal: Verdict,
+) -> String {
     let case = match set_in_words(&fired.set) {
         set if set.is_empty() => format!("case {}", index + 1),
         set => format!("case {}, {set}", index + 1),
     };
-    let Some(claim) = fired.claims.get(k) else {
+    let case = if worst.is_some() {
+        format!(
+            "{case}, at its worst corner; {} at nominal values",
+            nominal.words()
+        )
+    } else {
+        case
+    };
+    let Some(claim) = worst.map(|w| &w.claim).or_else(|| fired.claims.get(k)) else {
         return case;
     };
     match (claim.margin.filter(|m| m.is_finite()), reason(claim)) {
@@ -221,23 +290,12 @@ fn nearest(index: usize, fired: &Fired, k: usize) -> String {
 }
 
 /// The last line: `1 of 2 claims fails, over 7 cases`.
-fn total(judged: &Judged) -> (String, Tone) {
-    let count = |verdict| {
-        judged
-            .claims
-            .iter()
-            .filter(|c| c.verdict == verdict)
-            .count()
-    };
-    let (all, cases) = (
-        counted(judged.claims.len(), "claim"),
-        counted(judged.cases.len(), "case"),
-    );
+pub(super) fn total(verdicts: &[Verdict], over: &str) -> (String, Tone) {
+    let count = |verdict| verdicts.iter().filter(|v| **v == verdict).count();
+    let (all, cases) = (counted(verdicts.len(), "claim"), over);
     let (fails, undecided) = (count(Verdict::Fails), count(Verdict::Undecided));
     match (fails, undecided) {
-        (0, 0) if judged.claims.len() == 1 => {
-            (format!("the claim holds, over {cases}"), Tone::Good)
-        }
+        (0, 0) if verdicts.len() == 1 => (format!("the claim holds, over {cases}"), Tone::Good),
         (0, 0) => (format!("all {all} hold, over {cases}"), Tone::Good),
         (0, _) => (
             format!("{undecided} of {all} undecided and none fails, over {cases}"),
@@ -249,13 +307,5 @@ fn total(judged: &Judged) -> (String, Tone) {
             format!("of {all} {fails} failed and {undecided} undecided, over {cases}"),
             Tone::Bad,
         ),
-    }
-}
-
-fn counted(n: usize, word: &str) -> String {
-    if n == 1 {
-        format!("1 {word}")
-    } else {
-        format!("{n} {word}s")
     }
 }

@@ -15,6 +15,7 @@ mod list;
 mod methods;
 mod modes;
 mod opinion;
+mod spread;
 mod stress;
 
 pub use fire::{fire, fire_with};
@@ -30,6 +31,7 @@ pub use modes::modes;
 pub(crate) use modes::{energy as energy_in_words, held as held_in_words, title as topology_title};
 #[cfg(feature = "html")]
 pub(crate) use opinion::opinion_in_words;
+pub use spread::spread;
 #[cfg(feature = "html")]
 pub(crate) use {
     balance::{entries, least},
@@ -40,7 +42,17 @@ pub(crate) use {
 use crate::look::{Look, Tone, paragraph};
 use crate::number;
 use crate::record::{RemarkRecord, unit_of};
+use pulsewright_circuit::Stand;
 use pulsewright_study::outcome::{Answer, Found, Remark, Set, SetValue, Verdict};
+
+/// `1 case`, `7 cases`
+fn counted(n: usize, word: &str) -> String {
+    if n == 1 {
+        format!("1 {word}")
+    } else {
+        format!("{n} {word}s")
+    }
+}
 
 /// The tone of a verdict; the word says the same.
 fn tone(verdict: Verdict) -> Tone {
@@ -105,6 +117,15 @@ pub fn titled(title: Option<&str>, set: &Set) -> String {
         Some(title) => format!("{title}: {set}"),
         None => set,
     }
+}
+
+/// `bank = 34.2 µF, choke winding = 9.9 Ω`
+fn stands_in_words(stands: &[Stand]) -> String {
+    let one = |s: &Stand| {
+        let value = number::brief(s.value, &s.dimension.unit(), 6);
+        format!("{} = {value}", s.name)
+    };
+    stands.iter().map(one).collect::<Vec<_>>().join(", ")
 }
 
 /// Adds remarks, one a paragraph.

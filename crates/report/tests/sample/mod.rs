@@ -1,12 +1,15 @@
 //! A hand-made result with one of everything, so that pages and records need no run.
 
-use pulsewright_circuit::{Dimension, Span};
+use pulsewright_circuit::{Dimension, Span, Stand};
 use pulsewright_engine::modes::{Kind, NaturalMode};
 use pulsewright_engine::{Event, Shot};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{
     Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Difference, Extreme, Fired, Found,
-    Hazard, Judged, ReadingResult, Remark, SecondOpinion, Set, SetValue, Stress, Verdict,
+    Hazard, Judged, ReadingResult, Remark, SecondOpinion, Set, SetValue, Stress, Verdict, Worst,
+};
+use pulsewright_study::spread::{
+    Bins, CaseTally, ClaimTally, ReadingTally, Spread, Sum, Tally, merge,
 };
 use pulsewright_study::{
     Compared, MethodErrors, MethodWork, Methods, Modes, RunError, TopologyModes, Work,
@@ -176,6 +179,7 @@ pub fn fired() -> Fired {
     };
     Fired {
         set: load(50.0),
+        stands: Vec::new(),
         readings: readings(),
         claims: vec![dose(311.86, Verdict::Holds), brief()],
         events: vec![
@@ -400,17 +404,107 @@ pub fn judged() -> Judged {
             case(25.0, 263.314_285_7, Verdict::Holds),
             case(150.0, 345.597_879_6, Verdict::Fails),
         ],
+        worst: Vec::new(),
         claims: vec![
             ClaimSummary {
                 name: "dose".to_owned(),
                 verdict: Verdict::Fails,
+                nominal: Verdict::Fails,
                 worst: Some(1),
             },
             ClaimSummary {
                 name: "brief".to_owned(),
                 verdict: Verdict::Fails,
+                nominal: Verdict::Fails,
                 worst: Some(0),
             },
         ],
     }
+}
+
+/// The same with the dose at its worst corner, where it fails in the first case too.
+pub fn judged_at_corners() -> Judged {
+    let corner = |joules, farads| {
+        Some(Worst {
+            claim: dose(joules, Verdict::Fails),
+            positions: [-1.0, 1.0].into_iter().collect(),
+            corner: vec![
+                stand("bank", farads, Dimension::FARAD),
+                stand("choke winding", 10.5, Dimension::OHM),
+            ],
+        })
+    };
+    let mut judged = judged();
+    judged.worst = vec![
+        vec![corner(210.5, 30.4e-6), None],
+        vec![corner(390.25, 33.6e-6), None],
+    ];
+    judged.claims[0].nominal = Verdict::Holds;
+    judged
+}
+
+fn stand(name: &str, value: f64, dimension: Dimension) -> Stand {
+    Stand::new(name, value, dimension)
+}
+
+/// Forty draws of a stage in two cases, counted by hand: a claim on every shot, one on a share.
+pub fn tally(slice: [u64; 2]) -> Tally {
+    let claim = |name: &str, asked, holds, undecided| ClaimTally {
+        name: name.to_owned(),
+        text: "energy into chest".to_owned(),
+        relation: "is within 15 % of 300 J".to_owned(),
+        answers: vec!["REQ-12".to_owned()],
+        asked,
+        holds,
+        fails: 20 - holds - undecided,
+        undecided,
+    };
+    let mut reading = ReadingTally {
+        name: "dose".to_owned(),
+        text: "energy into chest".to_owned(),
+        unit: "J".to_owned(),
+        nominal: Some(300.0),
+        of: 0,
+        missing: 1,
+        bound: Some(0.0),
+        least: None,
+        most: None,
+        sum: Sum::default(),
+        squares: Sum::default(),
+        bins: Bins::default(),
+        against: vec![<[Sum; 3]>::default(); 2],
+    };
+    for draw in 1..20_u32 {
+        let p = f64::from(draw) / 10.0 - 1.0;
+        let found = value(300.0 + 40.0 * p, 1e-3);
+        reading.add(&found, draw.into(), &[Some(p), Some(p * p - 0.3)]);
+    }
+    let case = |ohms| CaseTally {
+        set: load(ohms),
+        claims: vec![
+            claim("dose", None, 18, 1),
+            claim("mostly", Some(0.5), 19, 0),
+        ],
+        readings: vec![reading.clone()],
+        hazards: fired().hazards,
+    };
+    Tally {
+        shots: 40,
+        seed: 1,
+        slice,
+        method: "trapezoidal rule".to_owned(),
+        span: 0.03,
+        defaults: vec!["start at rest".to_owned()],
+        steps: 1234,
+        smallest_step: Some(1e-9),
+        largest_step: Some(1e-4),
+        varying: vec!["bank".to_owned(), "choke winding".to_owned()],
+        cases: vec![case(25.0), case(50.0)],
+    }
+}
+
+/// The same as the whole that two slices make.
+pub fn spread() -> Spread {
+    let slices = vec![tally([1, 2]), tally([2, 2])];
+    Spread::from(merge(slices).unwrap_or_else(|_| tally([1, 1])))
 }

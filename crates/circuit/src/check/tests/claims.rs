@@ -28,6 +28,21 @@ fn a_limit_has_the_unit_of_its_reading() {
 }
 
 #[test]
+fn the_share_of_shots_is_a_share_up_to_all() {
+    let asked = |share: Expr| dose(at_most(joules(1.0))).in_at_least(share);
+    sound(asked(percent(99.7)));
+    check(
+        asked(Expr::from(0.997)),
+        "P0152",
+        "the share of shots of `c` needs a share, and 0.997 is written without `%` or `ppm`",
+    );
+    assert_eq!(
+        faults(asked(percent(101.0)))[0].to_string(),
+        "P0158: the share of shots of `c` needs a share between 0 % and 100 %, and it is 101 %"
+    );
+}
+
+#[test]
 fn p0550_a_span_is_needed() {
     let builder = Builder::new("")
         .resistor("r", "a", "ground", ohms(1.0))

@@ -9,7 +9,7 @@ const FORM: Form = Form {
     kind: "capacitor",
     values: &[("charged", &["to"]), ("series", &[]), ("leakage", &[])],
     actions: &[],
-    known: "`charged to`, `series`, `leakage`, `tolerance` and `standard deviation`",
+    known: "`charged to`, `series`, `leakage`, `tolerance`, `standard deviation` and `rated`",
 };
 
 impl Parser<'_> {

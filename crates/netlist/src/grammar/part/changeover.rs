@@ -11,7 +11,7 @@ const FORM: Form = Form {
     kind: "changeover",
     values: &[("contact", &[]), ("insulation", &[])],
     actions: &["moves"],
-    known: "`moves to`, `contact` and `insulation`",
+    known: "`moves to`, `contact`, `insulation` and `rated`",
 };
 
 impl Parser<'_> {

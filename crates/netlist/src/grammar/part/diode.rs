@@ -9,7 +9,7 @@ const FORM: Form = Form {
     kind: "diode",
     values: &[("threshold", &[]), ("slope", &[])],
     actions: &[],
-    known: "`threshold`, `slope`, `tolerance` and `standard deviation`",
+    known: "`threshold`, `slope`, `tolerance`, `standard deviation` and `rated`",
 };
 
 impl Parser<'_> {

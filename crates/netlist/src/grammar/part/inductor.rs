@@ -9,7 +9,7 @@ const FORM: Form = Form {
     kind: "inductor",
     values: &[("carrying", &[]), ("winding", &[])],
     actions: &[],
-    known: "`carrying`, `winding`, `tolerance` and `standard deviation`",
+    known: "`carrying`, `winding`, `tolerance`, `standard deviation` and `rated`",
 };
 
 impl Parser<'_> {

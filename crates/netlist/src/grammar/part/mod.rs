@@ -8,6 +8,7 @@ mod changeover;
 mod coupling;
 mod diode;
 mod inductor;
+mod rating;
 mod resistor;
 mod source;
 mod switch;
@@ -18,6 +19,7 @@ use pulsewright_circuit::parts::{Part, PartKind};
 use pulsewright_circuit::schedule::Action;
 use pulsewright_circuit::spread::Value;
 
+use super::statement::Made;
 use super::{Parser, Read};
 use crate::slip::What;
 use crate::token::Kind;
@@ -60,8 +62,8 @@ enum Last {
 }
 
 impl Parser<'_> {
-    /// A part, whose first word is `word`.
-    pub(super) fn part(&mut self, word: &str) -> Read<Part> {
+    /// A part, whose first word is `word`, with the claims that its ratings make.
+    pub(super) fn part(&mut self, word: &str) -> Read<Made> {
         self.at += 1;
         let name = self.thing("a name")?;
         self.named_by = self.at;
@@ -77,11 +79,9 @@ impl Parser<'_> {
             "changeover" => self.changeover(),
             _ => self.diode(),
         };
-        Ok(Part {
-            name,
-            kind,
-            span: self.whole_span(),
-        })
+        let claims = self.rated_claims(&name);
+        let span = self.whole_span();
+        Ok(Made::Part(Part { name, kind, span }, claims))
     }
 
     /// `from NODE to NODE`; where that is amiss the rest of the statement is passed over.
@@ -202,6 +202,9 @@ impl Parser<'_> {
             }
             found.values.push((word, value.into()));
             Last::Qualifier(found.values.len() - 1)
+        } else if word == "rated" && form.kind != "coupling" {
+            self.ratings()?;
+            Last::Nothing
         } else {
             return self.no_qualifier(form, word);
         };
@@ -245,7 +248,7 @@ impl Parser<'_> {
                 },
             );
         }
-        let spreads = ["tolerance", "standard"];
+        let spreads = ["tolerance", "standard", "rated"];
         let words = form
             .values
             .iter()

@@ -9,7 +9,7 @@ const FORM: Form = Form {
     kind: "resistor",
     values: &[],
     actions: &[],
-    known: "`tolerance` and `standard deviation`",
+    known: "`tolerance`, `standard deviation` and `rated`",
 };
 
 impl Parser<'_> {

@@ -11,7 +11,7 @@ impl Parser<'_> {
             kind,
             values: &[],
             actions: &[],
-            known: "`tolerance` and `standard deviation`",
+            known: "`tolerance`, `standard deviation` and `rated`",
         };
         let (from, to) = self.ends();
         let mut value = self.main_value();

@@ -10,13 +10,13 @@ const FORM: Form = Form {
     kind: "switch",
     values: &[("contact", &[]), ("insulation", &[])],
     actions: &["closes", "opens"],
-    known: "`closes`, `opens`, `contact` and `insulation`",
+    known: "`closes`, `opens`, `contact`, `insulation` and `rated`",
 };
 
 const GANGED: Form = Form {
     kind: "ganged switch",
     actions: &[],
-    known: "`contact` and `insulation`",
+    known: "`contact`, `insulation` and `rated`",
     ..FORM
 };
 
