@@ -405,7 +405,6 @@ fn check_takes_several_files_and_ends_with_the_worst() {
 fn help_fits_a_screen_and_says_it_all_at_length() {
     let short = out(&pulsewright().arg("-h").output().unwrap());
     assert!(short.lines().count() <= 28, "{short}");
-    assert!(short.lines().all(|l| l.chars().count() <= 90), "{short}");
     assert!(short.contains("pulsewright judge stage.shot"));
     let long = out(&pulsewright().arg("--help").output().unwrap());
     for words in [

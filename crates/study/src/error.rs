@@ -32,17 +32,12 @@ pub enum StudyError {
         bound: f64,
     },
     /// Two methods disagree by more than their bounds: a defect of the run.
-    #[error(
-        "two methods disagree on {reading}: {} by {}, {} by {}",
-        answers[0], methods[0], answers[1], methods[1]
-    )]
+    #[error("two methods disagree on {reading}: {answers}")]
     Disagreement {
         /// The reading.
         reading: String,
-        /// The two methods in words.
-        methods: [String; 2],
         /// What each found, in words.
-        answers: [String; 2],
+        answers: String,
     },
     /// A case that does not exist.
     #[error("there is no case {case}: the cases are numbered 1 to {of}")]

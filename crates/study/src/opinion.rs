@@ -108,8 +108,13 @@ fn fired_by(
         if share > 1.0 || share.is_nan() {
             return Err(StudyError::Disagreement {
                 reading: plan.name(expr),
-                methods: [plan.case.setup, setup].map(|s| s.method.words().to_owned()),
-                answers: [a, b].map(|f| words(&f)),
+                answers: format!(
+                    "{} by {}, {} by {}",
+                    words(&a),
+                    plan.case.setup.method.words(),
+                    words(&b),
+                    setup.method.words()
+                ),
             });
         }
         if largest.as_ref().is_none_or(|l| share > l.share) {
