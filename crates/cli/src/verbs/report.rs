@@ -9,7 +9,9 @@ use crate::say;
 use crate::shell::Shell;
 use crate::trouble::Trouble;
 use pulsewright::Options;
-use pulsewright::report::page::{Difference, Extras, modes_section, opinion_section, page, verify};
+use pulsewright::report::page::{
+    Difference, Extras, corners_section, modes_section, opinion_section, page, verify,
+};
 use std::path::Path;
 
 /// Judges every case and writes the page, or compares it with one that was written.
@@ -45,6 +47,7 @@ pub fn report(
     let extras = Extras {
         stamp,
         second_opinion: opinion_section(&judged),
+        worst_corners: corners_section(&judged),
         modes: modes.ok().map(|m| modes_section(&m)),
         ..Extras::default()
     };

@@ -17,7 +17,7 @@ mod shot;
 mod verify;
 mod view;
 
-pub use sections::{modes_section, opinion_section};
+pub use sections::{corners_section, modes_section, opinion_section};
 pub use verify::{Difference, verify};
 pub use view::{Cell, Section, Table};
 

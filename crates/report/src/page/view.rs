@@ -58,7 +58,8 @@ impl Cell {
         }
     }
 
-    fn verdict(verdict: Verdict) -> Self {
+    /// A verdict in its colour.
+    pub(super) fn verdict(verdict: Verdict) -> Self {
         Cell {
             text: verdict.words().to_owned(),
             class: class(verdict),

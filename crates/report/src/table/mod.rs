@@ -120,7 +120,7 @@ pub fn titled(title: Option<&str>, set: &Set) -> String {
 }
 
 /// `bank = 34.2 µF, choke winding = 9.9 Ω`
-fn stands_in_words(stands: &[Stand]) -> String {
+pub(crate) fn stands_in_words(stands: &[Stand]) -> String {
     let one = |s: &Stand| {
         let value = number::brief(s.value, &s.dimension.unit(), 6);
         format!("{} = {value}", s.name)
