@@ -4,9 +4,9 @@
 //! let-values -> setup -> plan -> ladder of shots -> readings with bounds -> claims -> Fired
 //! ```
 
-use pulsewright_circuit::draft::Claim;
+use pulsewright_circuit::draft::{Claim, Method};
 use pulsewright_circuit::setup::Element;
-use pulsewright_circuit::{Circuit, Dimension, Expr, LetValue, Positions, Setup};
+use pulsewright_circuit::{Circuit, Dimension, Expr, LetValue, Lets, Positions, Setup};
 use pulsewright_engine::Event;
 
 use crate::cases::case_set;
@@ -77,6 +77,9 @@ pub(crate) fn listed<'a>(
 /// known far less well, and verdicts are refined all the same.
 const ERROR: f64 = 1e-4;
 
+/// Draws of circuits with so many storing parts at most are propagated exactly.
+const EXACT_STORES: usize = 24;
+
 /// With what care a shot of a study is fired.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) enum Care {
@@ -100,10 +103,34 @@ pub(crate) fn measure(
     if care == Care::Drawn {
         setup.error = setup.error.max(ERROR);
     }
+    let stores = setup.parts.iter().filter(|p| p.element.stores()).count();
+    let stepped = setup.method == Method::Trapezoidal && setup.step.is_none();
+    if care == Care::Drawn && stepped && stores <= EXACT_STORES {
+        // In closed form a draw takes fewer points; where that does not apply it is stepped.
+        let exact = Setup {
+            method: Method::Exact,
+            ..setup.clone()
+        };
+        match measured(circuit, &exact, &lets, options, turn, care) {
+            Err(StudyError::Engine(_)) => {}
+            other => return other,
+        }
+    }
+    measured(circuit, &setup, &lets, options, turn, care)
+}
+
+fn measured(
+    circuit: &Circuit,
+    setup: &Setup,
+    lets: &Lets,
+    options: &Options<'_>,
+    turn: Turn,
+    care: Care,
+) -> Result<Measured, StudyError> {
     let case = Case {
         circuit,
-        setup: &setup,
-        lets: &lets,
+        setup,
+        lets,
     };
     let plan = Plan::of_readings(case, care == Care::Drawn);
     let judge = Judge {
@@ -114,7 +141,7 @@ pub(crate) fn measure(
         Care::Drawn => climb(&judge, &plan, options, turn)?,
         Care::Whole => by_both(&judge, options, turn)?.0,
     };
-    ladder.ledger.result(&setup, ladder.rules)?;
+    ladder.ledger.result(setup, ladder.rules)?;
     Ok(Measured {
         readings: named(&plan, &ladder),
         claims: judge.claims(&ladder.readings, ladder.rules)?,
