@@ -22,6 +22,8 @@ pub struct Draft {
     pub claims: Vec<Claim>,
     /// `cases …`, the last stated running fastest.
     pub cases: Vec<Cases>,
+    /// `adjust …`
+    pub adjust: Option<Adjust>,
     /// How the shot is run.
     pub run: Run,
     /// `note "…"`
@@ -151,6 +153,23 @@ pub enum CaseValues {
         /// Where the count stands.
         count_span: Span,
     },
+}
+
+/// `adjust NAME from X to Y so that READING is Z`: a let-value that each case solves for.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Adjust {
+    /// The let-value.
+    pub name: Name,
+    /// The lower end of where it is looked for.
+    pub from: Expr,
+    /// The upper end.
+    pub to: Expr,
+    /// The reading that is to reach a value, an expression of readings and let-values.
+    pub reading: Expr,
+    /// That value, an expression of let-values.
+    pub value: Expr,
+    /// Where it stands.
+    pub span: Span,
 }
 
 /// How the shot is run. `None` is the default.

@@ -11,6 +11,7 @@
 //! [`Circuit::setup`] puts numbers in for one case. This crate knows no text format, no
 //! equations and no files.
 
+mod adjust;
 pub mod builder;
 pub mod check;
 pub mod circuit;
@@ -35,6 +36,7 @@ pub mod vary;
 mod walk;
 pub mod words;
 
+pub use adjust::Adjusting;
 pub use circuit::{Circuit, LetValue, Lets};
 pub use dimension::Dimension;
 pub use draft::Draft;

@@ -169,6 +169,11 @@ pub(crate) fn all<'a>(draft: &'a Draft, visit: &mut dyn FnMut(&'a Expr)) {
             }
         }
     }
+    if let Some(a) = &draft.adjust {
+        [&a.from, &a.to, &a.reading, &a.value]
+            .into_iter()
+            .for_each(&mut *visit);
+    }
     let run = &draft.run;
     run.span
         .iter()

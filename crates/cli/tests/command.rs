@@ -277,6 +277,29 @@ fn a_case_takes_the_place_of_the_let_values() {
 }
 
 #[test]
+fn what_is_adjusted_is_a_column_of_the_table_and_stands_in_records() {
+    let folder = folder();
+    let adjust = "adjust load from 10 ohm to 100 ohm so that largest current through chest is";
+    let path = stage(&folder, &format!("{adjust} 200 A"));
+    let fired = record(&run("fire", &path, &["--json"]));
+    let load = &fired["adjusted"]["load"];
+    assert!(
+        (load["value"].as_f64().unwrap() - 25.0).abs() < 1e-6,
+        "{load}"
+    );
+    let table = out(&run("table", &path, &[])).to_owned();
+    assert!(table.starts_with("load (ohm),crest (A)\n"), "{table}");
+    let output = run("fire", &path, &["--set", "load=20 ohm"]);
+    assert_eq!(output.status.code(), Some(2), "{}", messages(&output));
+    assert!(messages(&output).contains("P0563"));
+    let path = stage(&folder, &format!("{adjust} 2 kA"));
+    let output = run("table", &path, &[]);
+    assert_eq!(output.status.code(), Some(2), "{}", messages(&output));
+    let said = "P0761: `load` cannot be adjusted: from 10 ohm to 100 ohm largest current through chest is found";
+    assert!(messages(&output).contains(said), "{}", messages(&output));
+}
+
+#[test]
 fn a_dash_reads_standard_input() {
     let mut child = Command::new(env!("CARGO_BIN_EXE_pulsewright"))
         .args(["judge", "-", "--json"])

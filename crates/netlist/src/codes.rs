@@ -126,7 +126,7 @@ pub const CODES: &[(&str, &str, &str)] = &[
     (
         "P0302",
         "no statement begins so",
-        "The first word of a line says what it states: a part (`resistor`, `capacitor`, `inductor`, `coupling`, `wire`, `voltage`, `current`, `switch`, `changeover`, `diode`), or `title`, `note`, `let`, `signal`, `reading`, `claim`, `cases`, `span`, `start`, `integrate`, `error`, `time step`, `channels`, `limit`, `repeat`, `end`.",
+        "The first word of a line says what it states: a part (`resistor`, `capacitor`, `inductor`, `coupling`, `wire`, `voltage`, `current`, `switch`, `changeover`, `diode`), or `title`, `note`, `let`, `signal`, `reading`, `claim`, `cases`, `adjust`, `span`, `start`, `integrate`, `error`, `time step`, `channels`, `limit`, `repeat`, `end`.",
     ),
     (
         "P0303",
@@ -230,7 +230,7 @@ pub const CODES: &[(&str, &str, &str)] = &[
     ),
     (
         "P0607",
-        "a count that `cases` would vary",
+        "a count that `cases` or `adjust` would vary",
         "A let-value that sets bounds or indices decides which parts there are, and is the same in all cases.",
     ),
     (

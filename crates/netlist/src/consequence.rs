@@ -109,6 +109,7 @@ fn is_definition(word: &str) -> bool {
             | "reading"
             | "claim"
             | "cases"
+            | "adjust"
             | "span"
             | "start"
             | "title"

@@ -353,7 +353,7 @@ impl<'a> Pass<'a, '_> {
     fn round(&mut self, statement: &Statement) {
         if matches!(
             self.document.word(statement, 0),
-            "let" | "title" | "note" | "cases"
+            "let" | "title" | "note" | "cases" | "adjust"
         ) {
             return;
         }
@@ -369,7 +369,9 @@ impl<'a> Pass<'a, '_> {
         let key = match word {
             "limit" => format!("limit {}", self.document.word(statement, 1)),
             "time" => "time step".to_owned(),
-            "title" | "span" | "start" | "integrate" | "error" | "channels" => word.to_owned(),
+            "title" | "adjust" | "span" | "start" | "integrate" | "error" | "channels" => {
+                word.to_owned()
+            }
             _ => return,
         };
         if !self.out.once.insert(key.clone()) {
@@ -395,6 +397,7 @@ impl<'a> Pass<'a, '_> {
             Made::Reading(named) => draft.readings.push(named),
             Made::Claim(claim) => draft.claims.push(claim),
             Made::Cases(cases) => draft.cases.push(cases),
+            Made::Adjust(adjust) => draft.adjust = draft.adjust.take().or(Some(adjust)),
             Made::Span(span) => run.span = run.span.take().or(Some(span)),
             Made::Start(steady) => run.steady = run.steady.or(Some(steady)),
             Made::Integrate(method, span) => run.method = run.method.or(Some((method, span))),
@@ -415,12 +418,15 @@ impl Out {
     fn close(&mut self, lets: &Lets) {
         self.refuse_shared_counters();
         let counted: HashSet<String> = lets.counted().into_iter().collect();
-        for name in self.draft.cases.iter().flat_map(|c| &c.names) {
+        let varied = self.draft.cases.iter().flat_map(|c| &c.names);
+        let adjusted = self.draft.adjust.iter().map(|a| (&a.name, "adjust"));
+        for (name, by) in varied.map(|n| (n, "cases")).chain(adjusted) {
             if counted.contains(&name.text) {
                 self.slips.push(Slip::new(
                     name.span,
                     What::CountVaried {
                         name: name.text.clone(),
+                        by,
                     },
                 ));
             }

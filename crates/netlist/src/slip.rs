@@ -173,8 +173,8 @@ pub(crate) enum What {
     CounterReserved { name: String },
     #[error("`{name}` is the name of a counter and of {by}")]
     CounterTwice { name: String, by: String },
-    #[error("`{name}` sets bounds or indices of a `repeat`, and `cases` would vary it")]
-    CountVaried { name: String },
+    #[error("`{name}` sets bounds or indices of a `repeat`, and `{by}` would vary it")]
+    CountVaried { name: String, by: &'static str },
     #[error("`{name}` is worked out from itself, in a circle")]
     WholeCircle { name: String },
 }

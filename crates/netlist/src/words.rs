@@ -32,6 +32,7 @@ pub(crate) const AFTER_NUMBER: &[&str] = &[
     "lognormal",
     "allowing",
     "answers",
+    "so",
 ];
 
 /// The first words of the statements that a part is stated by.
@@ -57,6 +58,7 @@ pub(crate) const STATEMENTS: &[&str] = &[
     "reading",
     "claim",
     "cases",
+    "adjust",
     "span",
     "start",
     "integrate",
@@ -74,6 +76,7 @@ pub(crate) const OUTSIDE_REPEAT: &[&str] = &[
     "note",
     "let",
     "cases",
+    "adjust",
     "span",
     "start",
     "integrate",
@@ -91,7 +94,6 @@ pub(crate) const LATER: &[(&str, &str)] = &[
     ("assembly", "`assembly`"),
     ("mount", "`mount`"),
     ("take", "`take in`"),
-    ("adjust", "`adjust`"),
     ("measured", "`measured`"),
 ];
 

@@ -47,7 +47,7 @@ fn every_example_reads_back_from_its_layout() {
 #[test]
 fn every_statement_has_a_page() {
     let words = "resistor capacitor inductor coupling wire voltage current switch changeover diode title note let \
-        signal reading claim cases span start integrate error time channels limit repeat end tolerance standard \
+        signal reading claim cases adjust span start integrate error time channels limit repeat end tolerance standard \
         closes opens moves when at after before between while during charged carrying winding series leakage contact \
         insulation threshold slope ganged energy charge gross action heat area highest lowest largest peak steepest \
         mean rms final rise fall front virtual width undershoot overshoot tilt settling period duration closing \

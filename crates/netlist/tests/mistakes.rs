@@ -69,7 +69,7 @@ const STATEMENTS: &[&str] = &[
     "changeover r from a to b or c : b\nchangeover q from a to b : at b\n",
     "diode d from a to b threshold 5 V\ndiode e from a to b : threshld 5 V\n",
     "capacitor c from a to b = 1 uF, charged to 5 V, charged to 6 V\nresistor r from a to b = 1 ohm, tolerance 1 %, tolerance 2 %\n",
-    "thyristor t from a to b\nmount s as x (a)\ntake in \"x\"\nadjust x from 1 V\ninductor l from a to b = 1 mH, saturates at 3 A\n",
+    "thyristor t from a to b\nmount s as x (a)\ntake in \"x\"\nmeasured x from \"a.csv\"\ninductor l from a to b = 1 mH, saturates at 3 A\n",
     "signal q = charge through c so far\nreading x = energy into r with load = open circuit\nswitch s from a to b : open, closes every 5 ms\n",
     "reading x = largest difference of a and b\nclaim y: x is at most 5 V, in at most 99 % of shots\n",
     "claim y: x is at most 5 V, in at least 99 % of cases\nclaim z: x is at most 5 V, in at least 9 % of shots, in at least 8 % of shots\n",
@@ -85,6 +85,15 @@ const STATEMENTS: &[&str] = &[
 ];
 
 const RUN: &[&str] = &[
+    "adjust v from 1 V so that x is 5 J\nadjust x form 1 V to 2 V so that y is 5 J\nadjust 5 V\n",
+    "adjust v from 1 V to 6 so tht x is 5 J\n",
+    "adjust v from 1 V to 6 so that x at least 5 J\n",
+    "adjust v from 1 V to 6 V, r from 1 ohm to 2 ohm so that x is 5 J\n",
+    "adjust v from 1 V to 6 V so that x is least\n",
+    "adjust v from 1 V to 6 V so that x is 5 J in every draw\n",
+    "adjust v from 1 V to 6 V so that x is 5 J, answers \"x\"\n",
+    "adjst v from 1 V to 6 V so that x is 5 J\nadjust v from 1 V to 6 V so that x is 5 J\n",
+    "let n = 3\nadjust n from 1 to 6 so that x is 5 J\nrepeat k from 1 to n\nend\nrepeat k from 1 to 2\nadjust v from 1 V to 6 V so that x is 5 J\nend\n",
     "integrate by trapezodal rule\nstart at res\ntime step\nerror at mots 1 ppm\n",
     "limit step 5\nlimit zorkmid 5\nlimit parts 1.5\nlimit nesting 1000\n",
     "cases load = 1 ohm to 2 ohm, 7 value\ncases x = 1 V to 2 V, many values\n",

@@ -91,6 +91,15 @@ and sines of linear functions of t, and up to 400 states. `integrate by trapezoi
     voltage feed from a to ground = 1 kV / (1 + (t / 1 us)^2)
     integrate by exact propagation",
     ),
+    (
+        "P0761",
+        "an adjustment without an answer",
+        "In a case the reading of `adjust` reaches its value nowhere between the ends, or only jumps past it. Move \
+the ends, or the value to what the circuit can give; the message says what the reading reaches.
+
+    let bank_v = 3 kV
+    adjust bank_v from 1 kV to 6 kV so that energy into chest is 150 J",
+    ),
 ];
 
 /// The mistake of a netlist that is to be judged and makes no claim.
@@ -109,6 +118,13 @@ pub fn nothing_to_judge() -> Fault {
 pub fn floating(claim: &str, message: String, circuit: &Circuit) -> Fault {
     let found = circuit.draft().claims.iter().find(|c| c.name.text == claim);
     Fault::new("P0759", found.map_or(Span::NONE, |c| c.name.span), message)
+}
+
+/// The mistake of an `adjust` whose reading never reaches its value.
+#[must_use]
+pub fn not_adjusted(message: String, circuit: &Circuit) -> Fault {
+    let found = circuit.draft().adjust.as_ref();
+    Fault::new("P0761", found.map_or(Span::NONE, |a| a.name.span), message)
 }
 
 /// The mistake in a circuit that a failure stands for; `None` where the circuit is not at

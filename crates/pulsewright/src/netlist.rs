@@ -332,6 +332,9 @@ impl Netlist {
             StudyError::Floating { claim, .. } => Error::Mistakes(
                 self.mistakes(vec![fault::floating(&claim, message, self.circuit())]),
             ),
+            StudyError::NotAdjusted { .. } => {
+                Error::Mistakes(self.mistakes(vec![fault::not_adjusted(message, self.circuit())]))
+            }
             _ => Error::Broke(message),
         }
     }

@@ -6,7 +6,8 @@
 //! open circuit,,0.0             a reading that does not exist there is left empty
 //! ```
 //!
-//! A column for each let-value that the cases vary, for each named reading, and for each claim
+//! A column for each let-value that the cases vary and for each that is
+//! adjusted, for each named reading, and for each claim
 //! whose reading has no name; a row a case. Written as waveforms are ([`crate::waveform`]).
 
 use crate::waveform::{digits, titled};
@@ -28,7 +29,8 @@ pub fn cases(cases: &[Fired], out: impl Write) -> io::Result<()> {
         let readings = first
             .answers()
             .map(|(name, text, answer)| titled(name, &crate::record::unit_of(answer, text)));
-        writer.write_record(set.chain(readings))?;
+        let adjusted = first.adjusted.iter().map(|a| titled(&a.name, &a.unit));
+        writer.write_record(set.chain(adjusted).chain(readings))?;
     }
     for case in cases {
         let set = case.set.iter().map(|(_, value)| match value {
@@ -36,7 +38,8 @@ pub fn cases(cases: &[Fired], out: impl Write) -> io::Result<()> {
             SetValue::Circuit(words) => words.clone(),
         });
         let readings = case.answers().map(|(_, _, answer)| number(answer));
-        writer.write_record(set.chain(readings))?;
+        let adjusted = case.adjusted.iter().map(|a| digits(a.value));
+        writer.write_record(set.chain(adjusted).chain(readings))?;
     }
     writer.flush()
 }

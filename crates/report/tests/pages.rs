@@ -37,6 +37,27 @@ fn the_page_of_a_study() {
 }
 
 #[test]
+fn what_was_adjusted_is_a_line_and_a_column() {
+    let judged = sample::adjusted();
+    let fired = &judged.cases[0];
+    let page = table::judge(&judged, &sample::origin(), look(80));
+    assert!(
+        page.contains("adjusted: bank_v = 3.500000000 kV ± 12 µV with load = 25 Ω\n"),
+        "{page}"
+    );
+    let page = table::fire(fired, &sample::origin(), look(80));
+    assert!(
+        page.contains("adjusted: bank_v = 3.500000000 kV ± 12 µV\n"),
+        "{page}"
+    );
+    let mut out = Vec::new();
+    pulsewright_report::cases::cases(&judged.cases, &mut out).unwrap();
+    let text = String::from_utf8(out).unwrap();
+    assert!(text.starts_with("load (ohm),bank_v (V),"), "{text}");
+    assert!(text.contains("\n25.0,3500.0,"), "{text}");
+}
+
+#[test]
 fn cases_by_readings() {
     let mut out = Vec::new();
     pulsewright_report::cases::cases(&sample::judged().cases, &mut out).unwrap();

@@ -77,6 +77,21 @@ fn the_record_of_all_cases_at_their_worst_corners() {
 }
 
 #[test]
+fn what_was_adjusted_stands_in_the_records() {
+    let judged = sample::adjusted();
+    let stands = r#""adjusted": {"bank_v": {"value": 3500.0, "unit": "V", "bound": 0.000012}}"#;
+    let blanks = |text: &str| text.split_whitespace().collect::<String>();
+    let text = record::text(&judge(&judged, &sample::origin()));
+    assert!(blanks(&text).contains(&blanks(stands)), "{text}");
+    schema::check("pulsewright.judge-1.json", &text);
+    let read: JudgeRecord = serde_json::from_str(&text).unwrap();
+    assert_eq!(record::text(&read), text);
+    let text = record::text(&fire(&judged.cases[0], &sample::origin()));
+    assert!(blanks(&text).contains(&blanks(stands)), "{text}");
+    schema::check("pulsewright.fire-1.json", &text);
+}
+
+#[test]
 fn the_record_of_mistakes() {
     insta::assert_snapshot!(record::text(&mistakes()));
 }

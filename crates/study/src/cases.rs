@@ -8,6 +8,7 @@ use std::sync::atomic::{AtomicUsize, Ordering};
 
 use pulsewright_circuit::{Circuit, LetValue, Positions};
 
+use crate::adjust::settle;
 use crate::error::StudyError;
 use crate::fire::{Care, measure, run};
 use crate::ladder::Turn;
@@ -44,8 +45,9 @@ pub fn judge(circuit: &Circuit, options: &Options<'_>) -> Result<Judged, StudyEr
         ..options.clone()
     };
     let one = |set: &CaseSet, turn: Turn| {
-        let nominal = run(circuit, set, options, turn)?;
-        let worst = Search::new(circuit, set, options, turn).all(&nominal.claims)?;
+        let settled = settle(circuit, set, options, turn)?;
+        let nominal = run(circuit, &settled, options, turn)?;
+        let worst = Search::new(circuit, &settled.set, options, turn).all(&nominal.claims)?;
         Ok((nominal, worst))
     };
     let judged: Vec<OneCase> = side_by_side(&sets, &one)?;
@@ -72,7 +74,14 @@ pub fn fire_cases(circuit: &Circuit, options: &Options<'_>) -> Result<Vec<Fired>
         at: Positions::nominal(),
         ..options.clone()
     };
-    side_by_side(&sets, &|set, turn| run(circuit, set, options, turn))
+    side_by_side(&sets, &|set, turn| {
+        run(
+            circuit,
+            &settle(circuit, set, options, turn)?,
+            options,
+            turn,
+        )
+    })
 }
 
 /// Does something in every case, on the machine's threads; the outcomes in order, or the first
@@ -142,8 +151,9 @@ pub fn corner(
     };
     let turn = Turn { case: 1, of: 1 };
     let at = Positions::nominal();
-    let nominal = measure(circuit, &options.held, &at, options, turn, Care::Whole)?;
-    let mut search = Search::new(circuit, &options.held, options, turn);
+    let set = settle(circuit, &options.held, options, turn)?.set;
+    let nominal = measure(circuit, &set, &at, options, turn, Care::Whole)?;
+    let mut search = Search::new(circuit, &set, options, turn);
     match nominal.claims.get(k) {
         Some(claim) => search.of(k, claim),
         None => Ok(None),

@@ -39,6 +39,16 @@ pub enum StudyError {
         /// What each found, in words.
         answers: String,
     },
+    /// An adjusted let-value for which a reading never reaches its value.
+    #[error("`{name}` cannot be adjusted{case}: {why}")]
+    NotAdjusted {
+        /// The let-value.
+        name: String,
+        /// ` with ` the let-values of the case, or nothing.
+        case: String,
+        /// Why, with what the reading reaches.
+        why: String,
+    },
     /// A case that does not exist.
     #[error("there is no case {case}: the cases are numbered 1 to {of}")]
     NoCase {

@@ -9,6 +9,7 @@ use pulsewright_circuit::setup::Element;
 use pulsewright_circuit::{Circuit, Dimension, Expr, LetValue, Lets, Positions, Setup};
 use pulsewright_engine::Event;
 
+use crate::adjust::{Settled, settle};
 use crate::cases::case_set;
 use crate::channels::channels;
 use crate::claims::{Bounded, Judgement, Limits, expressions, judge, limits};
@@ -41,7 +42,13 @@ pub fn fire(circuit: &Circuit, options: &Options<'_>) -> Result<Fired, StudyErro
         Some(n) => case_set(circuit, options, n)?,
         None => options.held.clone(),
     };
-    run(circuit, &set, options, Turn { case: 1, of: 1 })
+    let turn = Turn { case: 1, of: 1 };
+    run(
+        circuit,
+        &settle(circuit, &set, options, turn)?,
+        options,
+        turn,
+    )
 }
 
 /// What one shot of a study brings: readings and claims, and none of the rest.
@@ -151,14 +158,39 @@ fn measured(
     })
 }
 
-/// Fires one case.
-pub(crate) fn run(
+/// One reading at nominal values, by one method alone.
+pub(crate) fn aim(
     circuit: &Circuit,
     set: &[(String, LetValue)],
     options: &Options<'_>,
     turn: Turn,
+    reading: &Expr,
+) -> Result<Found, StudyError> {
+    let lets = circuit.lets(set)?;
+    let setup = circuit.setup(&lets)?;
+    let case = Case {
+        circuit,
+        setup: &setup,
+        lets: &lets,
+    };
+    let plan = Plan::of_one(case, reading);
+    let ladder = Ladder::climb(&plan, options, turn, &|_, _| true)?;
+    ladder.ledger.result(&setup, ladder.rules)?;
+    let series = ladder.readings.first();
+    Ok(series.map_or_else(
+        || Found::Absent("it was not measured".to_owned()),
+        |s| s.found(ladder.rules),
+    ))
+}
+
+/// Fires one case.
+pub(crate) fn run(
+    circuit: &Circuit,
+    settled: &Settled,
+    options: &Options<'_>,
+    turn: Turn,
 ) -> Result<Fired, StudyError> {
-    let lets = circuit.lets_at(set, &options.at)?;
+    let lets = circuit.lets_at(&settled.set, &options.at)?;
     let setup = circuit.setup_at(&lets, &options.at)?;
     let case = Case {
         circuit,
@@ -178,7 +210,8 @@ pub(crate) fn run(
     let mut channels = channels(&plan, &reader);
     mark(&plan, &reader, &claims, &mut channels);
     Ok(Fired {
-        set: settings(set),
+        set: settings(&settled.stated),
+        adjusted: settled.adjusted.clone(),
         stands: if options.at == Positions::nominal() {
             Vec::new()
         } else {
@@ -200,7 +233,11 @@ pub(crate) fn run(
             &plan,
             &Record::new(ladder.stores.as_ref().unwrap_or(&ladder.shot)),
         ),
-        remarks: remarks(circuit, &setup, &ladder.shot),
+        remarks: [
+            remarks(circuit, &setup, &ladder.shot),
+            settled.remarks.clone(),
+        ]
+        .concat(),
         defaults: circuit.defaults(),
         method: setup.method.words().to_owned(),
         span: setup.span,

@@ -9,6 +9,7 @@
 //! waveforms ([`waveform`]), measures ([`readings`]), compares meshes ([`bounds`]) and judges
 //! ([`claims`]).
 
+mod adjust;
 pub mod balance;
 pub mod bounds;
 mod cases;
@@ -40,6 +41,6 @@ pub use fire::fire;
 pub use methods::{Compared, MethodErrors, MethodWork, Methods, RunError, Rungs, Work, methods};
 pub use modes::{Modes, TopologyModes, modes};
 pub use options::{Hook, Options, Progress};
-pub use outcome::{Answer, ClaimResult, Fired, Found, Judged, Verdict, Worst};
+pub use outcome::{Adjusted, Answer, ClaimResult, Fired, Found, Judged, Verdict, Worst};
 pub use remarks::CODES;
 pub use spread::spread;

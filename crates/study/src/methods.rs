@@ -14,6 +14,7 @@ use pulsewright_circuit::expr::ExprKind;
 use pulsewright_circuit::{Circuit, Expr, LetValue, Setup};
 use pulsewright_engine::{Failure, Mesh, Request, Shot};
 
+use crate::adjust::settle;
 use crate::bounds::Precision;
 use crate::cases::case_set;
 use crate::error::StudyError;
@@ -148,6 +149,7 @@ pub fn methods(
         Some(n) => case_set(circuit, options, n)?,
         None => options.held.clone(),
     };
+    let set = settle(circuit, &set, options, Turn { case: 1, of: 1 })?.set;
     let lets = circuit.lets(&set)?;
     let setup = circuit.setup(&lets)?;
     let case = Case {

@@ -11,6 +11,7 @@ use pulsewright_circuit::setup::Element;
 use pulsewright_circuit::{Circuit, LetValue, Setup};
 use pulsewright_engine::modes::NaturalMode;
 
+use crate::adjust::settle;
 use crate::cases::case_set;
 use crate::error::StudyError;
 use crate::fire::settings;
@@ -71,6 +72,7 @@ pub fn modes(circuit: &Circuit, options: &Options<'_>) -> Result<Modes, StudyErr
         Some(n) => case_set(circuit, options, n)?,
         None => options.held.clone(),
     };
+    let set = settle(circuit, &set, options, Turn { case: 1, of: 1 })?.set;
     let lets = circuit.lets_at(&set, &options.at)?;
     let setup = circuit.setup_at(&lets, &options.at)?;
     let case = Case {

@@ -121,6 +121,20 @@ pub enum SetValue {
 /// Let-values held or varied, in the order of the file.
 pub type Set = Vec<(String, SetValue)>;
 
+/// A let-value that was solved for.
+#[derive(Clone, Debug, PartialEq)]
+#[cfg_attr(feature = "serde", derive(serde::Serialize))]
+pub struct Adjusted {
+    /// Its name.
+    pub name: String,
+    /// Its value in coherent SI units.
+    pub value: f64,
+    /// Its unit.
+    pub unit: String,
+    /// The bound on the value, from that of the reading and its slope.
+    pub bound: f64,
+}
+
 /// A value, its bound and when it was.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
 #[cfg_attr(feature = "serde", derive(serde::Serialize))]
@@ -228,6 +242,8 @@ pub struct Remark {
 pub struct Fired {
     /// The let-values that were set or varied.
     pub set: Set,
+    /// The let-values that were solved for.
+    pub adjusted: Vec<Adjusted>,
     /// What the values that vary came to, where the shot was not fired at nominal ones.
     #[cfg_attr(feature = "serde", serde(skip))]
     pub stands: Vec<Stand>,

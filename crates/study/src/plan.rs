@@ -102,6 +102,15 @@ impl<'a> Plan<'a> {
         plan
     }
 
+    /// What a shot is fired for that is to tell one reading.
+    #[must_use]
+    pub fn of_one(case: Case<'a>, reading: &Expr) -> Self {
+        let mut plan = Plan::of_readings(case, false);
+        plan.readings = vec![reading.clone()];
+        plan.record();
+        plan
+    }
+
     fn record(&mut self) {
         let case = self.case;
         let formulas = self

@@ -9,6 +9,7 @@
 //! | R0805 | more than a millionth of the stored energy lost at an event |
 //! | R0806 | a current whose split nothing determines |
 //! | R0807 | a part of the circuit that no path joins to ground |
+//! | R0808 | a reading that reaches its value in several places of an `adjust` |
 
 use pulsewright_circuit::{Circuit, Dimension, Setup, Span};
 use pulsewright_engine::Shot;
@@ -63,6 +64,12 @@ pub const CODES: &[(&str, &str, &str)] = &[
         "a part of the circuit floats",
         "No path joins these nodes to ground while the switches are in this state. Their potential is held where it \
          was; voltages between them are right, voltages against ground are not determined by the circuit.",
+    ),
+    (
+        "R0808",
+        "an adjustment with several answers",
+        "The reading of `adjust` reaches its value at several values of the let-value, and the lowest was taken. Move \
+         the ends of `adjust` so that only the one that is meant lies between them.",
     ),
 ];
 

@@ -1,7 +1,7 @@
 //! The run and its cases.
 
 use super::{Builder, named};
-use crate::draft::{CaseValues, Cases, Limit, Method};
+use crate::draft::{Adjust, CaseValues, Cases, Limit, Method};
 use crate::expr::Expr;
 use crate::span::Span;
 
@@ -170,6 +170,34 @@ impl Builder {
         count: u32,
     ) -> Self {
         self.range(name, from.into(), to.into(), count, true)
+    }
+
+    /// `adjust NAME from X to Y so that READING is Z`
+    ///
+    /// ```
+    /// # use pulsewright_circuit::builder::*;
+    /// let dose = energy_into("chest");
+    /// let built = Builder::new("").adjust("bank_v", volts(1e3), volts(6e3), dose, joules(150.0));
+    /// # assert!(built.draft().adjust.is_some());
+    /// ```
+    #[must_use]
+    pub fn adjust(
+        mut self,
+        name: &str,
+        from: impl Into<Expr>,
+        to: impl Into<Expr>,
+        reading: impl Into<Expr>,
+        value: impl Into<Expr>,
+    ) -> Self {
+        self.draft.adjust = Some(Adjust {
+            name: named(name),
+            from: from.into(),
+            to: to.into(),
+            reading: reading.into(),
+            value: value.into(),
+            span: Span::NONE,
+        });
+        self
     }
 
     fn range(self, name: &str, from: Expr, to: Expr, count: u32, by_ratio: bool) -> Self {

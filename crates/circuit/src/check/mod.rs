@@ -8,6 +8,7 @@
 //! unknown name has no type, and what has no type has no number, so that one cause gives one
 //! mistake. Faults are handed over in the order of the text.
 
+mod adjust;
 mod cases;
 mod circles;
 mod claims;
@@ -103,6 +104,7 @@ impl Draft {
                 readings: checker.readings_bad(),
                 claims: checker.claims(),
                 cases: checker.cases(),
+                adjust: checker.adjust(),
             };
             checker.run();
             checker.sums();

@@ -5,6 +5,7 @@
 //! against the same ranges when they are set up.
 
 use super::{Checker, Nominal, Types};
+use crate::circuit::LetValue;
 use crate::dimension::Dimension;
 use crate::draft::{CaseValues, Cases};
 use crate::expr::{Expr, ExprKind};
@@ -26,6 +27,7 @@ pub(super) struct Bad {
     /// The dimension of each sound claim's reading.
     pub claims: Vec<Option<Dimension>>,
     pub cases: Vec<bool>,
+    pub adjust: bool,
 }
 
 impl Checker<'_> {
@@ -88,6 +90,9 @@ impl Checker<'_> {
         self.remarks.extend(remarks);
         if sound_lets {
             self.each_case(&types, &nominal, bad, &later);
+            if !bad.adjust {
+                self.adjust_ends(&types, &nominal, &later);
+            }
         }
         drop(lookup);
         self.types = types;
@@ -133,6 +138,50 @@ impl Checker<'_> {
                 left = rest;
                 self.case(types, row, later);
             }
+        }
+    }
+
+    /// The ends of the adjusted let-value: ascending, and each fit to be set up as a case is.
+    fn adjust_ends(&mut self, types: &Types, nominal: &Nominal, later: &Later) {
+        let Some(adjust) = &self.draft.adjust else {
+            return;
+        };
+        let lookup = lets::lookup(self.index, nominal);
+        let mut setter = Setter::new(self.draft, self.index, types, &lookup, Vec::new());
+        setter.faults.clear();
+        setter.reading(&adjust.reading);
+        setter.finite(&adjust.value, "what the reading of `adjust` is to reach");
+        let what = "an end of `adjust`";
+        let ends = [&adjust.from, &adjust.to].map(|e| setter.finite(e, what));
+        let mut faults = setter.faults;
+        let name = &adjust.name.text;
+        let found = self.index.lets.get(name).and_then(|i| types.lets.get(*i));
+        let dimension = found.copied().flatten().map(|t| t.dimension);
+        let ([Some(low), Some(high)], Some(dimension)) = (ends, dimension) else {
+            self.faults.extend(faults);
+            return;
+        };
+        if low >= high {
+            let kind = FaultKind::AdjustOrder {
+                low,
+                high,
+                dimension,
+                given: Given::default(),
+            };
+            faults.push(kind.at(adjust.from.span.to(adjust.to.span)));
+        }
+        let is_sound = faults.is_empty();
+        self.faults.extend(faults);
+        if !is_sound {
+            return;
+        }
+        for (value, e) in [(low, &adjust.from), (high, &adjust.to)] {
+            let end = LetValue::Number { value, dimension };
+            let row = Row {
+                set: vec![(name.clone(), end)],
+                span: e.span,
+            };
+            self.case(types, row, later);
         }
     }
 

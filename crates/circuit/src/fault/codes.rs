@@ -333,6 +333,16 @@ pub const CODES: &[(&str, &str, &str)] = &[
         "A file that makes millions of parts is more often a slip in a `repeat` than meant. Raise the limit where it is meant: `limit parts 10_000_000`.",
     ),
     (
+        "P0563",
+        "an adjusted let-value that is set too",
+        "What `adjust` solves for cannot be varied by `cases` or held by `--set` as well. Take the `adjust` out, or vary what the reading is to reach: `cases rated_j = 150 J, 200 J`.",
+    ),
+    (
+        "P0564",
+        "ends of an adjustment that do not ascend",
+        "A let-value is adjusted from a lower end to a higher one: `adjust bank_v from 1 kV to 6 kV so that energy into chest is rated_j`.",
+    ),
+    (
         "P0701",
         "no ground",
         "Voltages are against the reference node, which is called `ground`; at least one part must touch it. A circuit that floats is joined to it by what it floats on, or at any one node.",

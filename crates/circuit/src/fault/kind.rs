@@ -259,6 +259,15 @@ pub enum FaultKind {
     TooManyCases { count: u64, most: u64 },
     /// A case's value that uses a let-value which is varied as well.
     CaseUsesVaried { name: String, varied: String },
+    /// A let-value that is adjusted and given a value in another way too; `by` in words.
+    AdjustVaried { name: String, by: &'static str },
+    /// The ends of where a let-value is adjusted that do not ascend.
+    AdjustOrder {
+        low: f64,
+        high: f64,
+        dimension: Dimension,
+        given: Given,
+    },
     /// A limit of nothing.
     ZeroLimit { limit: &'static str },
     /// More parts than the limit.

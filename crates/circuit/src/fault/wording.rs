@@ -82,6 +82,8 @@ impl FaultKind {
             K::CaseUsesVaried { .. } => "P0560",
             K::ZeroLimit { .. } => "P0561",
             K::TooManyParts { .. } => "P0562",
+            K::AdjustVaried { .. } => "P0563",
+            K::AdjustOrder { .. } => "P0564",
             K::NoGround { .. } => "P0701",
             K::PartlyWindowed { .. } => "R0350",
             K::PastSpan { .. } => "R0450",
@@ -469,6 +471,19 @@ impl FaultKind {
             K::CaseUsesVaried { name, varied } => {
                 format!("the cases of `{name}` use `{varied}`, which is varied as well")
             }
+            K::AdjustVaried { name, by } => {
+                format!("`{name}` is adjusted, and {by} gives it a value as well")
+            }
+            K::AdjustOrder {
+                low,
+                high,
+                dimension,
+                given,
+            } => format!(
+                "`adjust` needs ascending ends, and {} is not below {}{given}",
+                quantity(*low, *dimension),
+                quantity(*high, *dimension)
+            ),
             K::ZeroLimit { limit } => format!("a limit of 0 {limit} lets nothing run"),
             K::TooManyParts { count, limit } => {
                 format!("there are {count} parts, more than the limit of {limit}")

@@ -9,6 +9,7 @@
 //! In a `repeat` a statement is read once for its form, with counters unknown, and once for
 //! each round, with numbers in their place.
 
+mod adjust;
 mod claim;
 mod edge;
 mod expr;

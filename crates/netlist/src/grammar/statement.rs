@@ -1,6 +1,6 @@
 //! One statement: its first word decides what is read.
 
-use pulsewright_circuit::draft::{Cases, Claim, Let, Limit, Method, Named};
+use pulsewright_circuit::draft::{Adjust, Cases, Claim, Let, Limit, Method, Named};
 use pulsewright_circuit::parts::Part;
 use pulsewright_circuit::spread::Value;
 use pulsewright_circuit::{Expr, Span};
@@ -28,6 +28,7 @@ pub(crate) enum Made {
     Reading(Named),
     Claim(Claim),
     Cases(Cases),
+    Adjust(Adjust),
     Span(Expr),
     Start(bool),
     Integrate(Method, Span),
@@ -104,6 +105,7 @@ impl Parser<'_> {
             "reading" => return self.named_expression().map(Made::Reading),
             "claim" => return self.claim().map(Made::Claim),
             "cases" => return self.cases().map(Made::Cases),
+            "adjust" => return self.adjust().map(Made::Adjust),
             _ => self.at += 1,
         }
         let made = match word {
@@ -226,7 +228,7 @@ impl Parser<'_> {
             "coupling" => self.is_word(past, "between"),
             "let" | "signal" | "reading" => self.kind(past) == Some(Kind::Equal),
             "claim" => self.kind(past) == Some(Kind::Colon),
-            word => PARTS.contains(&word) && self.is_word(past, "from"),
+            word => (PARTS.contains(&word) || word == "adjust") && self.is_word(past, "from"),
         }
     }
 }

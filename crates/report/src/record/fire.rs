@@ -2,8 +2,9 @@
 
 use super::shot::events;
 use super::{
-    BalanceRecord, ClaimRecord, EventRecord, Finite, HazardRecord, Input, OpinionRecord, Ordered,
-    Origin, Program, ReadingRecord, RemarkRecord, Run, StressRecord, stands,
+    AdjustedRecord, BalanceRecord, ClaimRecord, EventRecord, Finite, HazardRecord, Input,
+    OpinionRecord, Ordered, Origin, Program, ReadingRecord, RemarkRecord, Run, StressRecord,
+    adjusted, stands,
 };
 use pulsewright_study::outcome::Fired;
 use serde::{Deserialize, Serialize};
@@ -17,6 +18,9 @@ pub struct FireRecord {
     pub program: Program,
     /// What was fired.
     pub input: Input,
+    /// The let-values that were solved for; absent where nothing is adjusted.
+    #[serde(skip_serializing_if = "Ordered::is_empty", default = "Ordered::none")]
+    pub adjusted: Ordered<AdjustedRecord>,
     /// What the values that vary came to, where the shot is a draw's or a corner's.
     #[serde(skip_serializing_if = "Ordered::is_empty", default = "Ordered::none")]
     pub values: Ordered<Finite>,
@@ -47,6 +51,7 @@ pub fn fire(fired: &Fired, origin: &Origin<'_>) -> FireRecord {
         record: "pulsewright.fire/1".to_owned(),
         program: Program::this(),
         input: Input::new(origin, &fired.set),
+        adjusted: adjusted(&fired.adjusted),
         values: stands(&fired.stands),
         run: Run::of([fired]),
         readings: fired.readings.iter().map(Into::into).collect(),

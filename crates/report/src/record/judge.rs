@@ -1,8 +1,9 @@
 //! `pulsewright.judge/1`: every case, and each claim over all of them.
 
 use super::{
-    AnswerRecord, BalanceRecord, ClaimRecord, Finite, HazardRecord, Input, OpinionRecord, Ordered,
-    Origin, Program, ReadingRecord, RemarkRecord, Run, SetRecord, set_record, stands,
+    AdjustedRecord, AnswerRecord, BalanceRecord, ClaimRecord, Finite, HazardRecord, Input,
+    OpinionRecord, Ordered, Origin, Program, ReadingRecord, RemarkRecord, Run, SetRecord, adjusted,
+    set_record, stands,
 };
 use pulsewright_study::outcome::{ClaimResult, ClaimSummary, Fired, Found, Judged, Worst};
 use serde::{Deserialize, Serialize};
@@ -31,6 +32,9 @@ pub struct JudgeRecord {
 pub struct CaseRecord {
     /// The let-values as the case sets them.
     pub set: Ordered<SetRecord>,
+    /// The let-values that were solved for; absent where nothing is adjusted.
+    #[serde(skip_serializing_if = "Ordered::is_empty", default = "Ordered::none")]
+    pub adjusted: Ordered<AdjustedRecord>,
     /// The named readings, in the file's order.
     pub readings: Vec<ReadingRecord>,
     /// The claims, in the file's order.
@@ -119,6 +123,7 @@ pub fn judge(judged: &Judged, origin: &Origin<'_>) -> JudgeRecord {
 fn case(fired: &Fired, worst: Option<&Vec<Option<Worst>>>) -> CaseRecord {
     CaseRecord {
         set: set_record(&fired.set),
+        adjusted: adjusted(&fired.adjusted),
         readings: fired.readings.iter().map(Into::into).collect(),
         claims: fired.claims.iter().map(Into::into).collect(),
         worst: worst.into_iter().flatten().flatten().map(corner).collect(),

@@ -40,7 +40,7 @@ pub use spread::{
 };
 
 use pulsewright_circuit::Stand;
-use pulsewright_study::outcome::{Fired, Set, SetValue};
+use pulsewright_study::outcome::{Adjusted, Fired, Set, SetValue};
 use serde::{Deserialize, Serialize};
 
 /// Where a result came from: what a record says of its input.
@@ -132,6 +132,30 @@ pub(crate) fn set_record(set: &Set) -> Ordered<SetRecord> {
 pub(crate) fn stands(all: &[Stand]) -> Ordered<Finite> {
     let number = |s: &Stand| Some((s.name.clone(), Finite::new(s.value)?));
     Ordered(all.iter().filter_map(number).collect())
+}
+
+/// A let-value that was solved for.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct AdjustedRecord {
+    /// Its value in coherent SI units; `null` where it is no finite number.
+    pub value: Option<Finite>,
+    /// Its unit.
+    pub unit: String,
+    /// The bound on the value, rounded up to two digits.
+    pub bound: Option<Finite>,
+}
+
+/// Let-values that were solved for, by name.
+pub(crate) fn adjusted(all: &[Adjusted]) -> Ordered<AdjustedRecord> {
+    let one = |a: &Adjusted| {
+        let record = AdjustedRecord {
+            value: Finite::new(a.value),
+            unit: a.unit.clone(),
+            bound: Finite::bound(a.bound),
+        };
+        (a.name.clone(), record)
+    };
+    Ordered(all.iter().map(one).collect())
 }
 
 /// A record's let-value as results hold it.

@@ -6,7 +6,7 @@ use super::events::events;
 use super::hazards::hazards;
 use super::opinion::opinion;
 use super::stress::stress;
-use super::{remarks, set_in_words, stands_in_words};
+use super::{adjusted_in_words, remarks, set_in_words, stands_in_words};
 use crate::look::{Look, Tone, heading, paragraph};
 use crate::number::{brief, quantity};
 use crate::record::Origin;
@@ -31,6 +31,10 @@ pub fn fire_with(fired: &Fired, origin: &Origin<'_>, look: Look, picture: &str) 
             &format!("with {}", set_in_words(&fired.set)),
             Tone::Plain,
         );
+    }
+    if !fired.adjusted.is_empty() {
+        let words = format!("adjusted: {}", adjusted_in_words(&fired.adjusted));
+        paragraph(&mut out, look, 0, &words, Tone::Plain);
     }
     if !fired.stands.is_empty() {
         let at = format!("at {}", stands_in_words(&fired.stands));

@@ -4,7 +4,10 @@ use super::claims::{asked, reason};
 use super::fire::{defaults, opening};
 use super::hazards::{hazards, worst};
 use super::opinion::opinion;
-use super::{Align, Cell, Grid, bound_cell, counted, remarks, set_in_words, stands_in_words, tone};
+use super::{
+    Align, Cell, Grid, adjusted_in_words, bound_cell, counted, remarks, set_in_words,
+    stands_in_words, tone,
+};
 use crate::look::{Look, Tone, heading, paragraph};
 use crate::number::{Scale, quantity};
 use crate::record::{Origin, unit_of};
@@ -27,6 +30,7 @@ pub fn judge(judged: &Judged, origin: &Origin<'_>, look: Look) -> String {
             Tone::Plain,
         );
     }
+    adjusted(&mut out, look, &judged.cases);
     hazards(
         &mut out,
         look,
@@ -62,6 +66,20 @@ fn run(judged: &Judged) -> String {
         quantity(first.span, "s"),
         first.method
     )
+}
+
+/// Adds what was solved for, a line a case.
+fn adjusted(out: &mut String, look: Look, cases: &[Fired]) {
+    for fired in cases.iter().filter(|c| !c.adjusted.is_empty()) {
+        let words = adjusted_in_words(&fired.adjusted);
+        let with = if fired.set.is_empty() {
+            String::new()
+        } else {
+            format!(" with {}", set_in_words(&fired.set))
+        };
+        let line = format!("adjusted: {words}{with}");
+        paragraph(out, look, 0, &line, Tone::Plain);
+    }
 }
 
 /// Adds the table of one claim: a row a case, one prefix for each column.

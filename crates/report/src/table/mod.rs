@@ -43,7 +43,7 @@ use crate::look::{Look, Tone, paragraph};
 use crate::number;
 use crate::record::{RemarkRecord, unit_of};
 use pulsewright_circuit::Stand;
-use pulsewright_study::outcome::{Answer, Found, Remark, Set, SetValue, Verdict};
+use pulsewright_study::outcome::{Adjusted, Answer, Found, Remark, Set, SetValue, Verdict};
 
 /// `1 case`, `7 cases`
 fn counted(n: usize, word: &str) -> String {
@@ -106,6 +106,15 @@ pub fn set_in_words(set: &Set) -> String {
         SetValue::Circuit(words) => format!("{name} = {words}"),
     };
     set.iter().map(one).collect::<Vec<_>>().join(", ")
+}
+
+/// `bank_v = 4.33013 kV ± 12 µV`
+fn adjusted_in_words(all: &[Adjusted]) -> String {
+    let one = |a: &Adjusted| {
+        let value = number::with_bound(a.value, a.bound, &a.unit);
+        format!("{} = {value}", a.name)
+    };
+    all.iter().map(one).collect::<Vec<_>>().join(", ")
 }
 
 /// A circuit's title and what its case sets: `Field unit: load = 25 Ω`; empty where there is neither.

@@ -5,8 +5,9 @@ use pulsewright_engine::modes::{Kind, NaturalMode};
 use pulsewright_engine::{Event, Shot};
 use pulsewright_report::Origin;
 use pulsewright_study::outcome::{
-    Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Difference, Extreme, Fired, Found,
-    Hazard, Judged, ReadingResult, Remark, SecondOpinion, Set, SetValue, Stress, Verdict, Worst,
+    Adjusted, Answer, BalanceResult, Channel, ClaimResult, ClaimSummary, Difference, Extreme,
+    Fired, Found, Hazard, Judged, ReadingResult, Remark, SecondOpinion, Set, SetValue, Stress,
+    Verdict, Worst,
 };
 use pulsewright_study::spread::{
     Bins, CaseTally, ClaimTally, ReadingTally, Spread, Sum, Tally, merge,
@@ -179,6 +180,7 @@ pub fn fired() -> Fired {
     };
     Fired {
         set: load(50.0),
+        adjusted: Vec::new(),
         stands: Vec::new(),
         readings: readings(),
         claims: vec![dose(311.86, Verdict::Holds), brief()],
@@ -390,6 +392,20 @@ pub fn methods() -> Methods {
             work("trapezoidal rule", Some(2.5e-3)),
         ],
     }
+}
+
+/// The same two cases, each with an adjusted charge.
+pub fn adjusted() -> Judged {
+    let mut judged = judged();
+    for case in &mut judged.cases {
+        case.adjusted = vec![Adjusted {
+            name: "bank_v".to_owned(),
+            value: 3.5e3,
+            unit: "V".to_owned(),
+            bound: 11.2e-6,
+        }];
+    }
+    judged
 }
 
 /// Two cases.

@@ -33,6 +33,7 @@ use std::sync::atomic::{AtomicU64, Ordering};
 use pulsewright_circuit::vary::Law;
 use pulsewright_circuit::{Circuit, Dimension, LetValue, Positions};
 
+use crate::adjust::{Settled, settle};
 use crate::error::StudyError;
 use crate::fire::{Care, Measured, measure, run};
 use crate::ladder::Turn;
@@ -83,7 +84,13 @@ struct Study<'a> {
 /// As for [`fire`](crate::fire), at nominal values or in the first draw that fails.
 pub fn spread(circuit: &Circuit, options: &Options<'_>, draws: Draws) -> Result<Tally, StudyError> {
     let sets = circuit.case_sets(&options.held)?;
-    let blank = blank(circuit, options, draws, &sets)?;
+    let turn = Turn { case: 1, of: 1 };
+    let settled: Vec<Settled> = sets
+        .iter()
+        .map(|set| settle(circuit, set, options, turn))
+        .collect::<Result<_, _>>()?;
+    let blank = blank(circuit, options, draws, &settled)?;
+    let sets = settled.into_iter().map(|s| s.set).collect();
     let [first, _] = draws.range();
     let study = Study {
         circuit,
@@ -185,7 +192,7 @@ fn blank(
     circuit: &Circuit,
     options: &Options<'_>,
     draws: Draws,
-    sets: &[Set],
+    settled: &[Settled],
 ) -> Result<Tally, StudyError> {
     let options = Options {
         stress: false,
@@ -193,15 +200,15 @@ fn blank(
         channels: Some(Vec::new()),
         ..options.clone()
     };
-    let nominal: Vec<Fired> = sets
+    let nominal: Vec<Fired> = settled
         .iter()
-        .map(|set| run(circuit, set, &options, Turn { case: 1, of: 1 }))
+        .map(|case| run(circuit, case, &options, Turn { case: 1, of: 1 }))
         .collect::<Result<_, _>>()?;
     let varying: Vec<String> = circuit.varying().into_iter().map(|v| v.name).collect();
     let cases = nominal
         .iter()
-        .zip(sets)
-        .map(|(fired, set)| blank_case(circuit, fired, set, varying.len()))
+        .zip(settled)
+        .map(|(fired, case)| blank_case(circuit, fired, &case.set, varying.len()))
         .collect::<Result<_, _>>()?;
     let first = nominal.first();
     Ok(Tally {

@@ -1,5 +1,6 @@
 //! Every mistake and remark, provoked: one fact a test.
 
+mod adjust;
 mod cases;
 mod claims;
 mod names;
