@@ -387,6 +387,12 @@ fn a_through_written_short_is_offered_in_full() {
     offered("reading c = gross charge thru r", 26, "through");
 }
 
+/// `is` is nearer to `in` than `into` is, but the reading's own word decides.
+#[test]
+fn what_a_reading_needs_goes_before_what_a_claim_needs() {
+    offered("claim c: energy in r is at most 5 J", 17, "into");
+}
+
 #[test]
 fn a_misspelt_current_is_placed_after_zero() {
     offered(

@@ -217,6 +217,12 @@ impl<'a> Parser<'a> {
         if let Some(slip) = self.unit_alone() {
             return Err(slip);
         }
+        // A claim's `is` is nearer to `in` than `into` is, but the reading's own word decides.
+        if words == ["is"]
+            && let Some(slip) = self.misspelt_second()
+        {
+            return Err(slip);
+        }
         let near = self
             .word(0)
             .and_then(|w| meant(w, words.iter().copied()))

@@ -31,15 +31,32 @@ const OTHERS: &[(&str, &[&str])] = &[
     ("short", &["circuit"]),
 ];
 
-/// The word that was probably meant; `thru` is too far from `through` by its letters.
+/// What is written for a word, but too unlike it to be a slip of the pen.
+const SHORT: &[(&str, &str)] = &[("thru", "through"), ("in", "into")];
+
+/// The word that was probably meant.
 pub(super) fn meant<'a>(
     word: &str,
     mut words: impl Iterator<Item = &'a str> + Clone,
 ) -> Option<&'a str> {
-    nearest(word, words.clone()).or_else(|| words.find(|w| word == "thru" && *w == "through"))
+    nearest(word, words.clone()).or_else(|| words.find(|w| SHORT.contains(&(word, w))))
 }
 
 impl Parser<'_> {
+    /// The mistake of the word here that is near what a phrase's first word, before it, needs.
+    pub(super) fn misspelt_second(&self) -> Option<Box<Slip>> {
+        let before = self.at.checked_sub(1).and_then(|i| self.tokens.get(i))?;
+        let (first, second) = (before.text(self.text), self.word(0)?);
+        let seconds = BEGINNINGS
+            .iter()
+            .chain(OTHERS)
+            .filter(|(f, _)| *f == first)
+            .flat_map(|(_, s)| s.iter().copied());
+        let meant = meant(second, seconds)?;
+        let expected = format!("`{meant}` after `{first}`");
+        Some(self.misspelt(self.place(), expected, second, meant))
+    }
+
     /// The mistake of the word here, or of the one before it, that is near a phrase's word.
     pub(super) fn misspelt_phrase(&self) -> Option<Box<Slip>> {
         let before = self.at.checked_sub(1).and_then(|i| self.tokens.get(i))?;
@@ -47,14 +64,10 @@ impl Parser<'_> {
         if let Some(slip) = self.misspelt_ordinal(before) {
             return Some(slip);
         }
-        let all = || BEGINNINGS.iter().chain(OTHERS);
-        let seconds = all()
-            .filter(|(f, _)| *f == first)
-            .flat_map(|(_, s)| s.iter().copied());
-        if let Some(meant) = meant(second, seconds) {
-            let expected = format!("`{meant}` after `{first}`");
-            return Some(self.misspelt(self.place(), expected, second, meant));
+        if let Some(slip) = self.misspelt_second() {
+            return Some(slip);
         }
+        let all = || BEGINNINGS.iter().chain(OTHERS);
         let firsts = all().filter(|(_, s)| s.contains(&second)).map(|(f, _)| *f);
         let alone = all()
             .filter(|(_, s)| s.is_empty() && self.begins_signal())
