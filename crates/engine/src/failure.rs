@@ -36,7 +36,7 @@ pub enum Failure {
         time: f64,
     },
     /// No state of the diodes and switches is consistent at an instant.
-    #[error("at {time} s no state of {} is consistent", listed(names))]
+    #[error("at {} no state of {} is consistent", seconds(*time), listed(names))]
     NoState {
         /// The parts whose states contradict each other.
         names: Vec<String>,
@@ -46,7 +46,8 @@ pub enum Failure {
     /// The equations have no single solution although the graph allows one (controlled sources
     /// can do that).
     #[error(
-        "at {time} s the equations have no single solution; look at {}",
+        "at {} the equations have no single solution; look at {}",
+        seconds(*time),
         listed(names)
     )]
     Singular {
@@ -57,8 +58,10 @@ pub enum Failure {
     },
     /// Events follow each other without end.
     #[error(
-        "at {time} s events of {} follow each other without end ({count} within {within} s)",
-        listed(names)
+        "at {} events of {} follow each other without end ({count} within {})",
+        seconds(*time),
+        listed(names),
+        seconds(*within)
     )]
     Chatter {
         /// The parts that keep changing.
@@ -71,7 +74,7 @@ pub enum Failure {
         within: f64,
     },
     /// A limit is reached.
-    #[error("the limit of {allowed} {limit} is reached at {time} s; `limit {limit} {}` would raise it", allowed.saturating_mul(10))]
+    #[error("the limit of {allowed} {limit} is reached at {}; `limit {limit} {}` would raise it", seconds(*time), allowed.saturating_mul(10))]
     Limit {
         /// The word of the limit.
         limit: &'static str,
@@ -81,7 +84,7 @@ pub enum Failure {
         time: f64,
     },
     /// A value that is no finite number.
-    #[error("{what} is no finite number at {time} s")]
+    #[error("{what} is no finite number at {}", seconds(*time))]
     NotFinite {
         /// The part, or what it is of.
         what: String,
@@ -107,11 +110,20 @@ pub enum Failure {
     #[error("{0}")]
     NotYet(String),
     /// The caller's hook asked to stop.
-    #[error("stopped at {time} s")]
+    #[error("stopped at {}", seconds(*time))]
     Cancelled {
         /// How far the shot had come, s.
         time: f64,
     },
+}
+
+/// An instant in seconds; small ones by a power of ten.
+fn seconds(t: f64) -> String {
+    if t == 0.0 || t.abs() >= 1e-6 {
+        format!("{t} s")
+    } else {
+        format!("{t:e} s")
+    }
 }
 
 fn listed(names: &[String]) -> String {
