@@ -761,12 +761,17 @@ fn rounding_turns_no_diode() {
 #[test]
 fn rounding_is_no_disagreement() {
     let f = fired(
-        "voltage feed from a to ground = 100 V * sin(2 * pi * 50 Hz * t)\n\
-         diode d from b to a : threshold 0.7 V\n\
-         resistor r from a to b = 1 kohm\n\
-         inductor l from b to ground = 10 mH\n\
-         span 30 ms\n\
-         reading most = lowest current through d\n",
+        "voltage feed from n0 to ground = 80 V * sin(2 * pi * 50 Hz * t) + 20 V * step(t - 8 ms)\n\
+         resistor rs from n0 to s = 50 ohm\n\
+         diode d0 from s to ground : slope 10 mohm\n\
+         diode d1 from n1 to s : threshold 0.7 V\n\
+         diode d2 from n0 to s\n\
+         diode d3 from s to n1\n\
+         capacitor c0 from ground to s = 33 uF\n\
+         capacitor c1 from n0 to ground = 33 uF\n\
+         capacitor c2 from ground to n0 = 4.7 uF\n\
+         span 50 ms\n\
+         reading low = lowest current through d3\n",
     );
     let opinion = f.second_opinion.unwrap();
     assert_eq!(opinion.missing, None);

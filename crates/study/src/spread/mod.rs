@@ -84,7 +84,7 @@ struct Study<'a> {
 /// As for [`fire`](crate::fire), at nominal values or in the first draw that fails.
 pub fn spread(circuit: &Circuit, options: &Options<'_>, draws: Draws) -> Result<Tally, StudyError> {
     let sets = circuit.case_sets(&options.held)?;
-    let turn = Turn { case: 1, of: 1 };
+    let turn = Turn::ONLY;
     let settled: Vec<Settled> = sets
         .iter()
         .map(|set| settle(circuit, set, options, turn))
@@ -202,7 +202,7 @@ fn blank(
     };
     let nominal: Vec<Fired> = settled
         .iter()
-        .map(|case| run(circuit, case, &options, Turn { case: 1, of: 1 }))
+        .map(|case| run(circuit, case, &options, Turn::ONLY))
         .collect::<Result<_, _>>()?;
     let varying: Vec<String> = circuit.varying().into_iter().map(|v| v.name).collect();
     let cases = nominal
