@@ -50,6 +50,14 @@ impl Run<'_> {
         self.shot.stated = values;
     }
 
+    /// The impulse of every probe.
+    fn impulses(&self, settled: &Restart) -> Vec<f64> {
+        let probes = self.request.probes.iter();
+        probes
+            .map(|p| impulse(&self.net, *p, &settled.impulses))
+            .collect()
+    }
+
     /// The equalising at 0 s: its loss has no part, since what is stated obeys no circuit.
     pub(crate) fn book_start(&mut self, before: &Point, settled: &Restart, initial: &[u8]) {
         let quiet = is_quiet(&settled.impulses);
@@ -58,12 +66,7 @@ impl Run<'_> {
             abrupt: !quiet,
             ..Jump::default()
         };
-        jump.impulses = self
-            .request
-            .probes
-            .iter()
-            .map(|p| impulse(&self.net, *p, &settled.impulses))
-            .collect();
+        jump.impulses = self.impulses(settled);
         let mut given = 0.0;
         for (k, b) in self.net.branches.iter().enumerate() {
             let energy = match b.law {
@@ -164,12 +167,7 @@ impl Run<'_> {
         settled: &Restart,
         first_event: usize,
     ) {
-        jump.impulses = self
-            .request
-            .probes
-            .iter()
-            .map(|p| impulse(&self.net, *p, &settled.impulses))
-            .collect();
+        jump.impulses = self.impulses(settled);
         if is_quiet(&settled.impulses) {
             return;
         }

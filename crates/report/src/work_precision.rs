@@ -18,6 +18,7 @@
 use std::fmt::Write as _;
 
 use crate::number::raised;
+use crate::plot::escaped;
 use crate::record::Origin;
 use pulsewright_study::outcome::Found;
 use pulsewright_study::{Compared, Methods};
@@ -493,22 +494,6 @@ fn text(out: &mut String, x: f64, y: f64, style: &str, words: &str) {
         "<text x=\"{x:.2}\" y=\"{y:.2}\"{gap}{style}>{}</text>",
         escaped(words)
     );
-}
-
-/// Text as XML has it, without what XML cannot hold.
-fn escaped(text: &str) -> String {
-    let mut out = String::with_capacity(text.len());
-    for c in text.chars() {
-        match c {
-            '&' => out.push_str("&amp;"),
-            '<' => out.push_str("&lt;"),
-            '>' => out.push_str("&gt;"),
-            '"' => out.push_str("&quot;"),
-            c if c.is_control() => out.push(' '),
-            c => out.push(c),
-        }
-    }
-    out
 }
 
 #[cfg(test)]

@@ -20,12 +20,12 @@ type CaseSet = Vec<(String, LetValue)>;
 /// A case at nominal values, and each claim at its worst corner.
 type OneCase = (Fired, Vec<Option<Worst>>);
 
-/// The let-values of the case with number `n`, counted from 1.
-pub(crate) fn case_set(
-    circuit: &Circuit,
-    options: &Options<'_>,
-    n: usize,
-) -> Result<CaseSet, StudyError> {
+/// The let-values of the one case that is asked for: `options.case`, counted from 1, else the
+/// nominal one.
+pub(crate) fn case_set(circuit: &Circuit, options: &Options<'_>) -> Result<CaseSet, StudyError> {
+    let Some(n) = options.case else {
+        return Ok(options.held.clone());
+    };
     let sets = circuit.case_sets(&options.held)?;
     let of = sets.len();
     let found = n.checked_sub(1).and_then(|k| sets.into_iter().nth(k));
@@ -149,7 +149,7 @@ pub fn corner(
             claim: claim.to_owned(),
         });
     };
-    let turn = Turn { case: 1, of: 1 };
+    let turn = Turn::ONLY;
     let at = Positions::nominal();
     let set = settle(circuit, &options.held, options, turn)?.set;
     let nominal = measure(circuit, &set, &at, options, turn, Care::Whole)?;

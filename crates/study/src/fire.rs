@@ -38,11 +38,8 @@ const FINER: f64 = 16.0;
 /// [`StudyError`] where the circuit has no answer, a let-value does not fit, a claim is on a
 /// floating reading, the joules do not add up, or the hook stops the run.
 pub fn fire(circuit: &Circuit, options: &Options<'_>) -> Result<Fired, StudyError> {
-    let set = match options.case {
-        Some(n) => case_set(circuit, options, n)?,
-        None => options.held.clone(),
-    };
-    let turn = Turn { case: 1, of: 1 };
+    let set = case_set(circuit, options)?;
+    let turn = Turn::ONLY;
     run(
         circuit,
         &settle(circuit, &set, options, turn)?,

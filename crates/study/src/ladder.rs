@@ -55,6 +55,11 @@ pub struct Turn {
     pub of: usize,
 }
 
+impl Turn {
+    /// The only case.
+    pub const ONLY: Turn = Turn { case: 1, of: 1 };
+}
+
 struct Climb<'p, 'a, 'o> {
     plan: &'p Plan<'a>,
     options: &'o Options<'o>,

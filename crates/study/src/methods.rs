@@ -11,7 +11,7 @@
 
 use pulsewright_circuit::draft::Method;
 use pulsewright_circuit::expr::ExprKind;
-use pulsewright_circuit::{Circuit, Expr, LetValue, Setup};
+use pulsewright_circuit::{Circuit, Expr, Setup};
 use pulsewright_engine::{Failure, Mesh, Request, Shot};
 
 use crate::adjust::settle;
@@ -145,11 +145,8 @@ pub fn methods(
     options: &Options<'_>,
     rungs: &Rungs<'_>,
 ) -> Result<Methods, StudyError> {
-    let set: Vec<(String, LetValue)> = match options.case {
-        Some(n) => case_set(circuit, options, n)?,
-        None => options.held.clone(),
-    };
-    let set = settle(circuit, &set, options, Turn { case: 1, of: 1 })?.set;
+    let set = case_set(circuit, options)?;
+    let set = settle(circuit, &set, options, Turn::ONLY)?.set;
     let lets = circuit.lets(&set)?;
     let setup = circuit.setup(&lets)?;
     let case = Case {
@@ -278,7 +275,7 @@ impl Reference {
             ..case
         };
         let plan = Plan::new(case, options);
-        let ladder = Ladder::climb(&plan, options, Turn { case: 1, of: 1 }, &|_, _| true)?;
+        let ladder = Ladder::climb(&plan, options, Turn::ONLY, &|_, _| true)?;
         let found = |one: &Asked<'_>| {
             let series = plan.place(one.expr).and_then(|k| ladder.readings.get(k));
             series.map_or_else(

@@ -8,7 +8,7 @@
 //! claims would be answered is not asked.
 
 use pulsewright_circuit::setup::Element;
-use pulsewright_circuit::{Circuit, LetValue, Setup};
+use pulsewright_circuit::{Circuit, Setup};
 use pulsewright_engine::modes::NaturalMode;
 
 use crate::adjust::settle;
@@ -68,11 +68,8 @@ pub struct TopologyModes {
 /// [`StudyError`] where the circuit has no answer, a let-value does not fit, there are too many
 /// states, or the hook stops the run.
 pub fn modes(circuit: &Circuit, options: &Options<'_>) -> Result<Modes, StudyError> {
-    let set: Vec<(String, LetValue)> = match options.case {
-        Some(n) => case_set(circuit, options, n)?,
-        None => options.held.clone(),
-    };
-    let set = settle(circuit, &set, options, Turn { case: 1, of: 1 })?.set;
+    let set = case_set(circuit, options)?;
+    let set = settle(circuit, &set, options, Turn::ONLY)?.set;
     let lets = circuit.lets_at(&set, &options.at)?;
     let setup = circuit.setup_at(&lets, &options.at)?;
     let case = Case {
@@ -86,7 +83,7 @@ pub fn modes(circuit: &Circuit, options: &Options<'_>) -> Result<Modes, StudyErr
         ..options.clone()
     };
     let plan = Plan::new(case, &options);
-    let shot = Ladder::climb(&plan, &options, Turn { case: 1, of: 1 }, &|_, _| true)?.shot;
+    let shot = Ladder::climb(&plan, &options, Turn::ONLY, &|_, _| true)?.shot;
     let topologies = pulsewright_engine::modes(&setup, &shot)?
         .into_iter()
         .map(|passage| TopologyModes {

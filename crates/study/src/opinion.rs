@@ -197,14 +197,14 @@ mod tests {
         };
         let options = Options::default();
         let plan = Plan::new(case, &options);
-        let ladder = Ladder::climb(&plan, &options, Turn { case: 1, of: 1 }, &|_, _| true).unwrap();
+        let ladder = Ladder::climb(&plan, &options, Turn::ONLY, &|_, _| true).unwrap();
         run(&plan, &ladder, &options)
     }
 
     #[test]
     fn two_methods_agree_on_the_stage() {
         with(|plan, ladder, options| {
-            let o = second_opinion(plan, ladder, options, Turn { case: 1, of: 1 }).unwrap();
+            let o = second_opinion(plan, ladder, options, Turn::ONLY).unwrap();
             assert_eq!(o.missing, None);
             assert!(o.largest.unwrap().share < 1.0);
         });
@@ -220,7 +220,7 @@ mod tests {
                     *henrys *= 1.00002;
                 }
             }
-            let found = fired_by(&broken, plan, ladder, options, Turn { case: 1, of: 1 });
+            let found = fired_by(&broken, plan, ladder, options, Turn::ONLY);
             let Err(StudyError::Disagreement { reading, .. }) = found else {
                 panic!("{found:?}")
             };

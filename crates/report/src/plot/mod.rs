@@ -17,9 +17,10 @@ mod terminal;
 
 pub use curve::{Trace, knots, thinned, value_at};
 pub use scale::{Axis, Tick};
-pub use svg::{Figure, SHEET, figure, svg};
+pub(crate) use svg::escaped;
 #[cfg(feature = "html")]
-pub(crate) use svg::{escaped, short};
+pub(crate) use svg::short;
+pub use svg::{Figure, SHEET, figure, svg};
 pub use terminal::{Ink, terminal};
 
 use crate::number::printed;

@@ -25,10 +25,7 @@ use super::{Axis, Panel, Plot, events, quantity_of};
 use crate::number::{brief, quantity};
 use labels::Box2;
 use marks::{crests, event_marks, gates, markers, window_bars, window_shades};
-#[cfg(feature = "html")]
 pub(crate) use paper::escaped;
-#[cfg(not(feature = "html"))]
-use paper::escaped;
 use paper::{Paper, px, width_of};
 use pulsewright_study::outcome::Channel;
 pub use style::SHEET;
